@@ -4,13 +4,12 @@ import { addedMilligrams, instant, milligrams, uuid } from './identifiers.ts';
 
 const shares = z.array(z.object({ componentId: uuid, ppb: z.int() }));
 
-/** A step still to be weighed; a bucket's composition is kept as it was when the plan was made. */
+/** A step still to be weighed. */
 const step = z.discriminatedUnion('kind', [
   z.object({ kind: z.literal('component'), componentId: uuid, plannedMg: milligrams }),
   z.object({
     kind: z.literal('bucket'),
     bucketId: uuid,
-    composition: shares,
     plannedMg: milligrams,
     empties: z.boolean(),
   }),
@@ -28,6 +27,8 @@ export const weighing = z.object({
   plannedMg: addedMilligrams,
   batchMg: addedMilligrams,
   remaining: z.array(step),
+  /** Of each leftover in the plan, what it held when the plan was made. */
+  leftovers: z.record(uuid, shares),
   additions: z.array(addition),
   startedAt: instant,
   startedBy: uuid,

@@ -1,0 +1,94 @@
+import { useEffect, useMemo, useState } from 'react';
+import { typeDigit } from '#components/ui/typed-digits.ts';
+import { useStation } from '#components/ui/station-context.ts';
+import type { Weighing } from '#contract/weighing.ts';
+import type { Milligrams } from '#domain/mass.ts';
+import { parseMass } from '#domain/parse-mass.ts';
+import { saveWeighing } from '#offline/weighings.ts';
+import { logAddition } from './log-addition.ts';
+import { type Overshoot, judgeReading } from './judge-reading.ts';
+import type { WeighFacts } from './use-weigh-facts.ts';
+
+export interface StepEntry {
+  text: string;
+  mass: Milligrams | undefined;
+  problem: string | undefined;
+  onTarget: boolean;
+  /** Set when logging this would need a repair. */
+  over: Overshoot | undefined;
+  emptied: boolean;
+  setEmptied: (emptied: boolean) => void;
+  type: (key: string) => void;
+  log: () => Promise<void>;
+  logging: boolean;
+}
+
+/** The reading of one step, typed on the keypad or the keyboard, and what logging it means. */
+export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
+  const { station } = useStation();
+  const step = weighing.remaining[0];
+  const [text, setText] = useState('');
+  const [logging, setLogging] = useState(false);
+  const [emptied, setEmptied] = useState(step?.kind === 'bucket' && step.empties);
+  const type = (key: string) => setText((before) => typeDigit(before, key));
+  useKeyboard(type);
+  const read = useMemo(() => readText(text, facts), [text, facts]);
+  const verdict = useMemo(
+    () => (read.mass === undefined ? undefined : judgeReading(weighing, facts, read.mass)),
+    [weighing, facts, read],
+  );
+
+  async function log() {
+    if (read.mass === undefined || step === undefined || logging) return;
+    setLogging(true);
+    const lotId = step.kind === 'component' ? (facts.lots.get(step.componentId)?.id ?? null) : null;
+    const next = logAddition(
+      weighing,
+      { actual: read.mass, lotId, actorId: station.person.id, emptied },
+      {
+        target: facts.target,
+        tolerance: facts.tolerance,
+        readability: facts.scale.readabilityMg as Milligrams,
+        now: new Date(),
+      },
+    );
+    await saveWeighing(station, next);
+    navigator.vibrate?.(60);
+  }
+  return {
+    text,
+    ...read,
+    onTarget: verdict?.onTarget ?? false,
+    over: verdict?.over,
+    emptied,
+    setEmptied,
+    type,
+    log,
+    logging,
+  };
+}
+
+function readText(text: string, facts: WeighFacts): { mass: Milligrams | undefined; problem: string | undefined } {
+  if (text === '') return { mass: undefined, problem: undefined };
+  const read = parseMass(text, {
+    unit: 'g',
+    readability: facts.scale.readabilityMg as Milligrams,
+    maximum: facts.scale.maximumMg as Milligrams,
+  });
+  return 'mass' in read ? { mass: read.mass, problem: undefined } : { mass: undefined, problem: read.problem };
+}
+
+/** Digits, comma, point and erase from a keyboard go to the reading, wherever the focus is. */
+function useKeyboard(type: (key: string) => void): void {
+  useEffect(() => {
+    const press = (event: KeyboardEvent) => {
+      if (event.ctrlKey || event.metaKey || event.altKey || event.target instanceof HTMLInputElement) return;
+      if (/^[0-9.,]$/.test(event.key) || event.key === 'Backspace') {
+        event.preventDefault();
+        type(event.key);
+      }
+    };
+    window.addEventListener('keydown', press);
+    return () => window.removeEventListener('keydown', press);
+  });
+}
