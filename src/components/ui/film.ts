@@ -1,4 +1,3 @@
-import { cssColourOf } from '#domain/colour.ts';
 
 export interface Lab {
   l: number;
@@ -10,5 +9,5 @@ export interface Lab {
 export function filmOf(lab: Lab | null): { colour: string; outline: 'dark' | 'pale' | '' } {
   if (lab === null) return { colour: 'transparent', outline: '' };
   const outline = lab.l < 38 ? 'dark' : lab.l > 90 ? 'pale' : '';
-  return { colour: cssColourOf(lab), outline };
+  return { colour: `lab(${lab.l} ${lab.a} ${lab.b})`, outline };
 }
