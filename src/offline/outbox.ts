@@ -1,0 +1,33 @@
+import { Dexie, type Table } from 'dexie';
+import type { Operation } from '#contract/operation.ts';
+import type { Problem } from '#contract/problem.ts';
+import type { Weighing } from '#contract/weighing.ts';
+
+export interface QueuedOperation {
+  opId: string;
+  deviceSeq: number;
+  operation: Operation;
+  /** sent: the server has answered for it; rejected: it waits for a person. */
+  status: 'waiting' | 'sent' | 'rejected';
+  changeSeq: number | null;
+  problem: Problem | null;
+  recordedAt: string;
+  sentAt: string | null;
+}
+
+export interface KeyRow {
+  name: string;
+  value: unknown;
+}
+
+/** What this install has recorded and not yet forgotten; never migrated destructively, flushed to the disk. */
+export class Outbox extends Dexie {
+  declare ops: Table<QueuedOperation, string>;
+  declare weighings: Table<Weighing, string>;
+  declare keys: Table<KeyRow, string>;
+
+  constructor(shopId: string, installId: string) {
+    super(`halfpail-outbox-${shopId}-${installId}`, { chromeTransactionDurability: 'strict' });
+    this.version(1).stores({ ops: '&opId, deviceSeq, status', weighings: '&id', keys: '&name' });
+  }
+}

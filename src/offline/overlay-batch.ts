@@ -1,0 +1,118 @@
+import type { Addition, Filled } from '#contract/operation-bodies.ts';
+import type { Operation } from '#contract/operation.ts';
+import type { Row } from '#contract/rows.ts';
+import { type Parent, inherit } from '#domain/compatibility.ts';
+import { type Composition, blend } from '#domain/composition.ts';
+import { type Milligrams, type PartsPerBillion, WHOLE } from '#domain/mass.ts';
+import type { OverlayFacts, Shown } from './overlay.ts';
+
+type BatchMixed = Extract<Operation, { type: 'batch-mixed' }>;
+
+/** A mixed batch: its row, the leftovers it took from, and the labelled tubs it was filled into. */
+export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: OverlayFacts): Shown {
+  const { body } = operation;
+  const buckets = new Map(shown.buckets);
+  for (const addition of body.additions) if (addition.kind === 'bucket') takeFrom(buckets, addition);
+  for (const tub of body.filled) buckets.set(tub.bucketId, newTub(shown, operation, tub, facts));
+  const sum = (additions: readonly Addition[]) => additions.reduce((total, addition) => total + addition.actualMg, 0);
+  const batches = new Map(shown.batches).set(body.batchId, {
+    id: body.batchId,
+    formulaId: body.formulaId,
+    revision: body.revision,
+    plannedMg: body.plannedMg,
+    actualMg: sum(body.additions),
+    reusedMg: sum(body.additions.filter((addition) => addition.kind === 'bucket')),
+    state: body.release === null ? 'mixed' : 'released',
+    light: body.release?.light ?? null,
+    releasedBy: body.release === null ? null : operation.actorId,
+    mixedBy: operation.actorId,
+    mixedAt: operation.deviceTime,
+    jobId: body.jobId,
+    rush: body.rush,
+  });
+  return { buckets, batches };
+}
+
+function takeFrom(buckets: Map<string, Row<'buckets'>>, addition: Addition & { kind: 'bucket' }): void {
+  const bucket = buckets.get(addition.bucketId);
+  if (bucket === undefined) return;
+  const balanceMg = addition.empties ? 0 : bucket.balanceMg - addition.actualMg;
+  buckets.set(bucket.id, { ...bucket, balanceMg, state: addition.empties ? 'empty' : bucket.state });
+}
+
+function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: OverlayFacts): Row<'buckets'> {
+  const { body } = operation;
+  const formula = facts.formulas.get(body.formulaId);
+  const revision = formula?.revisions.find((entry) => entry.revision === body.revision);
+  const inherited = inherit(body.additions.map((addition) => parentOf(addition, shown, facts)));
+  return {
+    id: tub.bucketId,
+    code: tub.code,
+    name: formula?.name ?? 'Mixed',
+    formulaId: body.formulaId,
+    revision: body.revision,
+    batchId: body.batchId,
+    familyId: revision?.familyId ?? '',
+    containerId: tub.containerId,
+    tareMg: tub.tareMg,
+    filledMg: tub.massMg,
+    filledAt: operation.deviceTime,
+    filledBy: operation.actorId,
+    locationId: tub.locationId,
+    state: 'shelf',
+    released: body.release !== null,
+    balanceMg: tub.massMg,
+    needsRecount: false,
+    seen: { [operation.installId]: operation.deviceSeq },
+    composition: sharesOf(mixtureOf(body.additions, shown)),
+    ...inherited,
+    restrictions: [...inherited.restrictions],
+    hazards: [...inherited.hazards],
+    reservedFor: null,
+    jobId: body.jobId,
+    parents: body.additions.flatMap((addition) =>
+      addition.kind === 'bucket' ? [{ bucketId: addition.bucketId, massMg: addition.actualMg }] : [],
+    ),
+    lab: revision?.lab ?? null,
+    hiding: revision?.hiding ?? 0,
+  };
+}
+
+/** Leftovers that are not on this device leave the composition unknown until the server tells it. */
+function mixtureOf(additions: readonly Addition[], shown: Shown): Composition {
+  const sources: { composition: Composition; mass: Milligrams }[] = [];
+  for (const addition of additions) {
+    const mass = addition.actualMg as Milligrams;
+    if (addition.kind === 'component') sources.push({ composition: new Map([[addition.componentId, WHOLE]]), mass });
+    else {
+      const shares = shown.buckets.get(addition.bucketId)?.composition ?? [];
+      if (shares.length === 0) return new Map();
+      sources.push({
+        composition: new Map(shares.map((share) => [share.componentId, share.ppb as PartsPerBillion])),
+        mass,
+      });
+    }
+  }
+  return blend(sources);
+}
+
+function sharesOf(composition: Composition): Row<'buckets'>['composition'] {
+  return [...composition].map(([componentId, ppb]) => ({ componentId, ppb }));
+}
+
+function parentOf(addition: Addition, shown: Shown, facts: OverlayFacts): Parent {
+  if (addition.kind === 'component') {
+    const component = facts.components.get(addition.componentId);
+    const lot = addition.lotId === null ? undefined : facts.lots.get(addition.lotId);
+    return {
+      grade: 'untouched',
+      useBy: lot?.useBy ?? null,
+      cureC: component?.cureC ?? null,
+      restrictions: component?.restrictions ?? [],
+      hazards: component?.hazards ?? [],
+      generation: 0,
+    };
+  }
+  const bucket = shown.buckets.get(addition.bucketId);
+  return bucket ?? { grade: 'unknown', useBy: null, cureC: null, restrictions: [], hazards: [], generation: 0 };
+}

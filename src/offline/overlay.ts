@@ -1,0 +1,71 @@
+import type { Operation } from '#contract/operation.ts';
+import type { Row } from '#contract/rows.ts';
+import { foldBatchMixed } from './overlay-batch.ts';
+import { foldReturned } from './overlay-return.ts';
+
+export interface Shown {
+  buckets: ReadonlyMap<string, Row<'buckets'>>;
+  batches: ReadonlyMap<string, Row<'batches'>>;
+}
+
+/** Rows that the effects read. */
+export interface OverlayFacts {
+  formulas: ReadonlyMap<string, Row<'formulas'>>;
+  components: ReadonlyMap<string, Row<'components'>>;
+  lots: ReadonlyMap<string, Row<'lots'>>;
+}
+
+/** What is shown: the cache with the effect of every operation that it does not hold yet, in the order of recording. */
+export function foldPending(cached: Shown, operations: readonly Operation[], facts: OverlayFacts): Shown {
+  return operations.reduce((shown, operation) => foldOne(shown, operation, facts), cached);
+}
+
+function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown {
+  switch (operation.type) {
+    case 'batch-mixed':
+      return foldBatchMixed(shown, operation, facts);
+    case 'batch-released':
+      return foldReleased(shown, operation);
+    case 'bucket-issued':
+      return changeBucket(shown, operation.body.bucketId, () => ({
+        state: 'at-press',
+        jobId: operation.body.jobId,
+        locationId: null,
+      }));
+    case 'bucket-returned':
+      return changeBucket(shown, operation.body.bucketId, (bucket) => foldReturned(bucket, operation.body));
+    case 'bucket-relocated':
+      return changeBucket(shown, operation.body.bucketId, () => ({ locationId: operation.body.locationId }));
+    case 'bucket-recounted':
+      return changeBucket(shown, operation.body.bucketId, (bucket) => ({
+        balanceMg: bucket.balanceMg + operation.body.deltaMg,
+        tareMg: operation.body.tareMg,
+        needsRecount: false,
+      }));
+    case 'bucket-discarded':
+      return changeBucket(shown, operation.body.bucketId, () => ({ balanceMg: 0, state: 'discarded' }));
+  }
+}
+
+function foldReleased(shown: Shown, operation: Operation & { type: 'batch-released' }): Shown {
+  const batch = shown.batches.get(operation.body.batchId);
+  if (batch === undefined) return shown;
+  const batches = new Map(shown.batches).set(batch.id, {
+    ...batch,
+    state: 'released',
+    light: operation.body.release.light,
+    releasedBy: operation.actorId,
+  });
+  const buckets = new Map(shown.buckets);
+  for (const bucket of shown.buckets.values()) {
+    if (bucket.batchId === batch.id) buckets.set(bucket.id, { ...bucket, released: true });
+  }
+  return { buckets, batches };
+}
+
+/** A bucket that is not on this device stays unknown; the server knows it. */
+function changeBucket(shown: Shown, id: string, change: (bucket: Row<'buckets'>) => Partial<Row<'buckets'>>): Shown {
+  const bucket = shown.buckets.get(id);
+  if (bucket === undefined) return shown;
+  return { ...shown, buckets: new Map(shown.buckets).set(id, { ...bucket, ...change(bucket) }) };
+}

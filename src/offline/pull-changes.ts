@@ -1,0 +1,107 @@
+import { type PullResponse, pullResponse } from '#contract/pull.ts';
+import { type TableName, rows, tableNames } from '#contract/rows.ts';
+import type { Cache } from './cache.ts';
+import type { Station } from './station.ts';
+import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
+
+export interface LoadProgress {
+  done: number;
+  /** Null until the server has counted. */
+  total: number | null;
+  bytes: number;
+}
+
+const PAGE = 1000;
+
+/** Pulls pages from the cursor until there is no more; a first load reports its progress. */
+export async function pullChanges(
+  station: Station,
+  deps: SyncDeps,
+  onProgress: (progress: LoadProgress) => void,
+): Promise<SyncResult> {
+  const progress: LoadProgress = { done: 0, total: null, bytes: 0 };
+  for (;;) {
+    const position = await station.cache.meta.get('position');
+    const first = (position?.completeAt ?? null) === null;
+    const page = await fetchPage(station, position?.cursor ?? '', deps);
+    if ('kind' in page) return page;
+    if (page.refetch) {
+      await startOver(station.cache);
+      continue;
+    }
+    await settleOwn(station, page.answer, deps.now());
+    await writePage(station.cache, page.answer, position?.completeAt ?? null, deps.now());
+    progress.done += page.answer.changes.length;
+    progress.bytes += page.bytes;
+    if (page.answer.remaining !== null) progress.total = progress.done + page.answer.remaining;
+    if (first) onProgress({ ...progress });
+    if (!page.answer.more) return { kind: 'done' };
+  }
+}
+
+type Page = { refetch: false; answer: PullResponse; bytes: number } | { refetch: true };
+
+async function fetchPage(station: Station, cursor: string, deps: SyncDeps): Promise<Page | SyncResult> {
+  const query = new URLSearchParams({ cursor, limit: String(PAGE), install: station.installId });
+  const response = await deps.fetch(`/api/sync/pull?${query}`).catch(() => undefined);
+  if (response === undefined) return { kind: 'offline' };
+  if (response.status === 409) return { refetch: true };
+  const refusal = refusalOf(response);
+  if (refusal !== null) return refusal;
+  const text = await response.text().catch(() => '');
+  const answer = pullResponse.safeParse(parseJson(text));
+  if (!answer.success)
+    return { kind: 'failed', problem: 'The answer was cut off. It tries again.', retryAfterMs: null };
+  return { refetch: false, answer: answer.data, bytes: text.length };
+}
+
+/** Own operations that the rows contain count as sent, whether or not the answer to their push arrived. */
+async function settleOwn(station: Station, answer: PullResponse, now: Date): Promise<void> {
+  const { ops } = station.outbox;
+  await station.outbox.transaction('rw', ops, async () => {
+    for (const { opId, changeSeq } of answer.own) {
+      const entry = await ops.get(opId);
+      if (entry?.status === 'waiting') await ops.update(opId, { status: 'sent', changeSeq, sentAt: now.toISOString() });
+    }
+  });
+}
+
+/** Rows and position in one transaction: never one without the other. */
+async function writePage(cache: Cache, answer: PullResponse, completeAt: string | null, now: Date): Promise<void> {
+  const tables = tableNames.map((name) => cache.rows(name));
+  await cache.transaction('rw', [...tables, cache.meta], async () => {
+    for (const name of tableNames) {
+      const changes = answer.changes.filter((change) => change.table === name);
+      const gone = changes.flatMap((change) => ('deleted' in change ? [change.id] : []));
+      const kept = changes.flatMap((change) => ('row' in change ? [rowOf(name, change.row)] : []));
+      if (gone.length > 0) await cache.rows(name).bulkDelete(gone);
+      if (kept.length > 0) await cache.table(name).bulkPut(kept);
+    }
+    await cache.meta.put({
+      name: 'position',
+      cursor: answer.cursor,
+      seq: answer.seq,
+      completeAt: completeAt ?? (answer.more ? null : now.toISOString()),
+    });
+  });
+}
+
+function rowOf(name: TableName, row: unknown): unknown {
+  return rows[name].parse(row);
+}
+
+async function startOver(cache: Cache): Promise<void> {
+  const tables = tableNames.map((name) => cache.rows(name));
+  await cache.transaction('rw', [...tables, cache.meta], async () => {
+    for (const table of tables) await table.clear();
+    await cache.meta.clear();
+  });
+}
+
+function parseJson(text: string): unknown {
+  try {
+    return JSON.parse(text);
+  } catch {
+    return undefined;
+  }
+}

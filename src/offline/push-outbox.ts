@@ -1,0 +1,88 @@
+import {
+  LARGEST_PUSH_BYTES,
+  LARGEST_PUSH_OPERATIONS,
+  PROTOCOL,
+  type PushOutcome,
+  pushResponse,
+} from '#contract/push.ts';
+import { putKey } from './outbox-keys.ts';
+import type { Outbox, QueuedOperation } from './outbox.ts';
+import type { Station } from './station.ts';
+import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
+
+/** Sends what waits, in the order of recording, until nothing waits or an exchange fails. */
+export async function pushOutbox(station: Station, deps: SyncDeps): Promise<SyncResult> {
+  for (;;) {
+    const batch = await nextBatch(station.outbox);
+    if (batch.length === 0) return { kind: 'done' };
+    const result = await pushBatch(station, batch, deps);
+    if (result.kind !== 'done') return result;
+  }
+}
+
+/** One push settles only what the server names: a portal's page or a cut answer settles nothing. */
+async function pushBatch(station: Station, batch: readonly QueuedOperation[], deps: SyncDeps): Promise<SyncResult> {
+  const requestId = deps.randomId();
+  const sentAt = deps.now();
+  const response = await deps
+    .fetch('/api/sync/push', {
+      method: 'POST',
+      headers: { 'content-type': 'application/json' },
+      body: JSON.stringify({ protocol: PROTOCOL, requestId, ops: batch.map((entry) => entry.operation) }),
+    })
+    .catch(() => undefined);
+  if (response === undefined) return { kind: 'offline' };
+  const refusal = refusalOf(response);
+  if (refusal !== null) return refusal;
+  const answer = pushResponse.safeParse(await response.json().catch(() => undefined));
+  if (!answer.success || answer.data.requestId !== requestId) {
+    return { kind: 'failed', problem: 'The answer was not for this device. It tries again.', retryAfterMs: null };
+  }
+  await measureClock(station.outbox, answer.data.serverTime, sentAt, deps.now());
+  const settled = await settle(station.outbox, batch, answer.data.results, deps.now());
+  return settled > 0 ? { kind: 'done' } : { kind: 'failed', problem: 'The server asks to wait.', retryAfterMs: null };
+}
+
+async function nextBatch(outbox: Outbox): Promise<QueuedOperation[]> {
+  const waiting = await outbox.ops.where('status').equals('waiting').sortBy('deviceSeq');
+  const batch: QueuedOperation[] = [];
+  let bytes = 200;
+  for (const entry of waiting.slice(0, LARGEST_PUSH_OPERATIONS)) {
+    bytes += new TextEncoder().encode(JSON.stringify(entry.operation)).length + 1;
+    if (bytes > LARGEST_PUSH_BYTES && batch.length > 0) break;
+    batch.push(entry);
+  }
+  return batch;
+}
+
+/** @returns how many were settled; `retry` and operations that are not named wait on */
+async function settle(
+  outbox: Outbox,
+  batch: readonly QueuedOperation[],
+  results: readonly PushOutcome[],
+  now: Date,
+): Promise<number> {
+  const byId = new Map(results.map((result) => [result.opId, result]));
+  return outbox.transaction('rw', outbox.ops, async () => {
+    let settled = 0;
+    for (const { opId } of batch) {
+      const result = byId.get(opId);
+      if (result === undefined || result.outcome === 'retry') continue;
+      settled += 1;
+      await outbox.ops.update(
+        opId,
+        result.outcome === 'rejected'
+          ? { status: 'rejected', problem: result.problem }
+          : { status: 'sent', changeSeq: result.changeSeq, sentAt: now.toISOString() },
+      );
+    }
+    return settled;
+  });
+}
+
+/** The server's clock lies inside the exchange: half of it is the uncertainty. */
+async function measureClock(outbox: Outbox, serverTime: string, sentAt: Date, now: Date): Promise<void> {
+  const half = (now.getTime() - sentAt.getTime()) / 2;
+  const offsetMs = Math.round(new Date(serverTime).getTime() - (sentAt.getTime() + half));
+  await putKey(outbox, 'clock', { offsetMs, uncertaintyMs: Math.ceil(Math.abs(half)), lastContact: serverTime });
+}

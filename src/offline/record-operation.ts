@@ -1,0 +1,118 @@
+import { v7 as uuidv7 } from 'uuid';
+import {
+  type Operation,
+  type SeenByBucket,
+  LARGEST_OPERATION_BYTES,
+  operation as operationSchema,
+} from '#contract/operation.ts';
+import type { OperationBody } from '#contract/operation-bodies.ts';
+import type { Weighing } from '#contract/weighing.ts';
+import { makeBucketCode } from '#domain/bucket-code.ts';
+import { findKey, nextOf } from './outbox-keys.ts';
+import type { Outbox } from './outbox.ts';
+import type { Station } from './station.ts';
+import { touchedBuckets } from './touched-buckets.ts';
+
+interface Deps {
+  now: () => Date;
+  randomId: () => string;
+}
+const here: Deps = { now: () => new Date(), randomId: uuidv7 };
+
+/** What cannot be recorded; the message says what to do. */
+export class RecordError extends Error {
+  override name = 'RecordError';
+}
+
+/** Queues the operation; what is shown is the cache folded with the queue, so nothing else is written. @throws RecordError */
+export async function recordOperation(station: Station, body: OperationBody, deps: Deps = here): Promise<Operation> {
+  const seen = await seenNow(station, body);
+  const { outbox } = station;
+  return outbox.transaction('rw', outbox.ops, outbox.keys, () => enqueue(station, body, seen, deps));
+}
+
+/** Closes an open batch: its operation is queued and the weighing removed in one transaction. @throws RecordError */
+export async function finishWeighing(
+  station: Station,
+  weighing: Weighing,
+  body: OperationBody,
+  deps: Deps = here,
+): Promise<Operation> {
+  const seen = await seenNow(station, body);
+  const { outbox } = station;
+  return outbox.transaction('rw', outbox.ops, outbox.keys, outbox.weighings, async () => {
+    if ((await outbox.weighings.get(weighing.id)) === undefined)
+      throw new RecordError('This batch is finished already. Open the Bench.');
+    await outbox.weighings.delete(weighing.id);
+    return enqueue(station, body, seen, deps);
+  });
+}
+
+/** The next tub code of this install; each is given once. */
+export async function takeBucketCode(station: Station): Promise<string> {
+  const counter = await station.outbox.transaction('rw', station.outbox.keys, () =>
+    nextOf(station.outbox, 'tubCounter'),
+  );
+  return makeBucketCode(station.codePrefix, counter);
+}
+
+async function enqueue(station: Station, body: OperationBody, seen: SeenByBucket, deps: Deps): Promise<Operation> {
+  const { outbox } = station;
+  const clock = (await findKey(outbox, 'clock')) ?? { offsetMs: 0, uncertaintyMs: 0, lastContact: null };
+  const recordedAt = deps.now().toISOString();
+  const operation = {
+    opId: deps.randomId(),
+    installId: station.installId,
+    deviceSeq: await nextOf(outbox, 'deviceSeq'),
+    opVersion: 1 as const,
+    actorId: station.person.id,
+    grantId: station.grant.id,
+    grantLapsed: station.grant.lapsed,
+    deviceTime: recordedAt,
+    clock,
+    seen: await withPending(outbox, station.installId, seen),
+    ...body,
+  } satisfies Operation;
+  requireRecordable(operation);
+  await outbox.ops.add({
+    opId: operation.opId,
+    deviceSeq: operation.deviceSeq,
+    operation,
+    status: 'waiting',
+    changeSeq: null,
+    problem: null,
+    recordedAt,
+    sentAt: null,
+  });
+  return operation;
+}
+
+function requireRecordable(operation: Operation): void {
+  const parsed = operationSchema.safeParse(operation);
+  if (!parsed.success) {
+    const issue = parsed.error.issues[0];
+    throw new RecordError(`Not saved: ${issue?.path.join('.') ?? 'entry'}: ${issue?.message ?? 'not valid'}`);
+  }
+  if (new TextEncoder().encode(JSON.stringify(operation)).length > LARGEST_OPERATION_BYTES) {
+    throw new RecordError('Not saved: the entry is too large. Split it.');
+  }
+}
+
+/** What the cache knows of each touched bucket: the last operation of every install. */
+async function seenNow(station: Station, body: OperationBody): Promise<SeenByBucket> {
+  const ids = touchedBuckets(body);
+  const rows = await station.cache.rows('buckets').bulkGet(ids);
+  return Object.fromEntries(ids.map((id, n) => [id, { ...rows[n]?.seen }]));
+}
+
+/** Own operations that still wait are known too. */
+async function withPending(outbox: Outbox, installId: string, seen: SeenByBucket): Promise<SeenByBucket> {
+  const known = structuredClone(seen);
+  for (const queued of await outbox.ops.toArray()) {
+    for (const id of touchedBuckets(queued.operation)) {
+      const ofBucket = known[id];
+      if (ofBucket !== undefined) ofBucket[installId] = Math.max(ofBucket[installId] ?? 0, queued.deviceSeq);
+    }
+  }
+  return known;
+}

@@ -1,0 +1,58 @@
+import { v7 as uuidv7 } from 'uuid';
+import { problem } from '#contract/problem.ts';
+import { signInResponse } from '#contract/sign-in.ts';
+import { readInstalls } from './installs.ts';
+import { findKey } from './outbox-keys.ts';
+import { Outbox } from './outbox.ts';
+import { saveSignIn } from './station.ts';
+
+interface Deps {
+  post: typeof fetch;
+  storage: Storage;
+  randomId: () => string;
+}
+const here = (): Deps => ({ post: (input, init) => fetch(input, init), storage: localStorage, randomId: uuidv7 });
+
+/** Signs in and keeps what opens the station again without a network; else a sentence that says what to do. */
+export async function requestSignIn(
+  credentials: { email: string; password: string },
+  deps: Deps = here(),
+): Promise<{ ok: true } | { ok: false; problem: string }> {
+  const body = {
+    ...credentials,
+    installIds: await wholeInstalls(deps.storage),
+    newInstallId: deps.randomId(),
+  };
+  const response = await deps
+    .post('/api/auth/sign-in', {
+      method: 'POST',
+      headers: { 'content-type': 'application/json' },
+      body: JSON.stringify(body),
+    })
+    .catch(() => undefined);
+  if (response === undefined) return { ok: false, problem: 'No network. The first sign-in needs one.' };
+  const answer: unknown = await response.json().catch(() => undefined);
+  const signedIn = signInResponse.safeParse(answer);
+  if (response.ok && signedIn.success) {
+    await saveSignIn(signedIn.data);
+    // Asked for once a station is set up, so that the browser does not clear its logs.
+    await navigator.storage?.persist?.();
+    return { ok: true };
+  }
+  const refused = problem.safeParse(answer);
+  return {
+    ok: false,
+    problem: refused.success ? refused.data.detail : 'The server did not answer properly. Try again.',
+  };
+}
+
+/** Installs whose outbox is still there; one that was cleared by the browser must not count its codes anew. */
+async function wholeInstalls(storage: Storage): Promise<string[]> {
+  const whole: string[] = [];
+  for (const [shopId, installId] of Object.entries(readInstalls(storage).installs)) {
+    const outbox = new Outbox(shopId, installId);
+    if ((await findKey(outbox, 'codePrefix')) !== undefined) whole.push(installId);
+    outbox.close();
+  }
+  return whole;
+}

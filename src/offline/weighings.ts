@@ -1,0 +1,17 @@
+import { type Weighing, weighing as weighingSchema } from '#contract/weighing.ts';
+import type { Station } from './station.ts';
+
+/** Every step is on the disk before it is shown as done. */
+export async function saveWeighing(station: Station, weighing: Weighing): Promise<void> {
+  await station.outbox.weighings.put(weighingSchema.parse(weighing) as Weighing);
+}
+
+export function findWeighing(station: Station, id: string): Promise<Weighing | undefined> {
+  return station.outbox.weighings.get(id);
+}
+
+/** Open batches, the one touched last first. */
+export async function listWeighings(station: Station): Promise<Weighing[]> {
+  const open = await station.outbox.weighings.toArray();
+  return open.sort((a, b) => b.updatedAt.localeCompare(a.updatedAt));
+}
