@@ -91,6 +91,23 @@ export const bucketDiscarded = z.strictObject({
   note: z.nullable(note),
 });
 
+/** A tub that was there before the books: weighed, and its content assumed or unknown. */
+export const bucketAdopted = z.strictObject({
+  bucketId: uuid,
+  code: bucketCode,
+  name: shortText,
+  familyId: uuid,
+  containerId: uuid,
+  grossMg: addedMilligrams,
+  tareMg: milligrams,
+  locationId: z.nullable(uuid),
+  /** Empty: unknown, and never folded in by composition. */
+  composition: z.array(
+    z.strictObject({ componentId: uuid, ppb: z.int().check(z.minimum(1), z.maximum(1_000_000_000)) }),
+  ),
+  lab: z.nullable(z.strictObject({ l: z.number(), a: z.number(), b: z.number() })),
+});
+
 /** Every operation a station may record, by type. `opVersion` of each is 1. */
 export const operationBodies = {
   'batch-mixed': batchMixed,
@@ -100,6 +117,7 @@ export const operationBodies = {
   'bucket-relocated': bucketRelocated,
   'bucket-recounted': bucketRecounted,
   'bucket-discarded': bucketDiscarded,
+  'bucket-adopted': bucketAdopted,
 } as const;
 
 export type OperationType = keyof typeof operationBodies;

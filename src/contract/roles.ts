@@ -16,6 +16,7 @@ export const operationRoles: Readonly<Record<OperationType, readonly Role[]>> = 
   'bucket-relocated': press,
   'bucket-recounted': press,
   'bucket-discarded': ink,
+  'bucket-adopted': ink,
 };
 
 /** True when `person` may record an operation of this type. */

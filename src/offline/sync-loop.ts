@@ -54,8 +54,8 @@ export function startSync(station: Station, deps: SyncDeps = here): SyncHandle {
 }
 
 /** Undefined when another tab of this install is at it. */
-function underLock(station: Station, run: () => Promise<SyncResult>): Promise<SyncResult | undefined> {
-  return navigator.locks.request(`halfpail-sync-${station.installId}`, { ifAvailable: true }, async (lock) =>
+async function underLock(station: Station, run: () => Promise<SyncResult>): Promise<SyncResult | undefined> {
+  return await navigator.locks.request(`halfpail-sync-${station.installId}`, { ifAvailable: true }, async (lock) =>
     lock === null ? undefined : await run(),
   );
 }
