@@ -1,5 +1,6 @@
 import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
+import { adoptedTub } from './overlay-adopted.ts';
 import { foldBatchMixed } from './overlay-batch.ts';
 import { foldReturned } from './overlay-return.ts';
 
@@ -42,6 +43,8 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
         tareMg: operation.body.tareMg,
         needsRecount: false,
       }));
+    case 'bucket-adopted':
+      return { ...shown, buckets: new Map(shown.buckets).set(operation.body.bucketId, adoptedTub(operation)) };
     case 'bucket-discarded':
       return changeBucket(shown, operation.body.bucketId, () => ({ balanceMg: 0, state: 'discarded' }));
   }

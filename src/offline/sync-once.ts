@@ -11,7 +11,7 @@ export async function syncOnce(
   onProgress: (progress: LoadProgress) => void,
 ): Promise<SyncResult> {
   const result = await exchange(station, deps, onProgress);
-  if (result.kind !== 'signed-out' || !(await renew(deps))) return result;
+  if (result.kind !== 'signed-out' || !(await renew(station, deps))) return result;
   return exchange(station, deps, onProgress);
 }
 
@@ -25,8 +25,8 @@ async function exchange(
 }
 
 /** A live session gives a fresh grant and station credential. */
-async function renew(deps: SyncDeps): Promise<boolean> {
-  const response = await deps.fetch('/api/auth/renew', { method: 'POST' }).catch(() => undefined);
+async function renew(station: Station, deps: SyncDeps): Promise<boolean> {
+  const response = await deps.fetch(`/api/auth/renew?install=${station.installId}`, { method: 'POST' }).catch(() => undefined);
   if (response === undefined || !response.ok) return false;
   const answer = signInResponse.safeParse(await response.json().catch(() => undefined));
   if (!answer.success) return false;

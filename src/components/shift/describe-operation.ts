@@ -12,6 +12,7 @@ const VERBS = {
   'bucket-relocated': 'Moved',
   'bucket-recounted': 'Re-weighed',
   'bucket-discarded': 'Discarded',
+  'bucket-adopted': 'Took in',
 } as const;
 
 /** An operation in the words of the room, with its mass where it has one. */

@@ -1,6 +1,7 @@
 import { type ReactNode, useEffect, useState } from 'react';
 import { type Station, openStation } from '#offline/station.ts';
 import { type SyncHandle, startSync } from '#offline/sync-loop.ts';
+import { keepCodeReader } from './code-reader.ts';
 import { FirstLoad } from './FirstLoad.tsx';
 import { LapsedNote } from './LapsedNote.tsx';
 import { Nav, type Area } from './Nav.tsx';
@@ -18,6 +19,7 @@ interface Props {
 /** The root of every station page: opens the station without a network, keeps it in step, shows the first load. */
 export function StationRoot({ area, flow = false, className = '', children }: Props) {
   const open = useOpenStation();
+  useEffect(keepCodeReader, []);
   if (open === undefined) return null;
   return (
     <StationContext value={open}>

@@ -4,7 +4,8 @@ interface Props {
   title: string;
   /** Under the title, lighter. */
   sub?: string;
-  back?: { href: string; label: string };
+  /** `onGo` goes back inside the page instead of loading `href`. */
+  back?: { href: string; label: string; onGo?: () => void };
   children?: ReactNode;
 }
 
@@ -13,7 +14,16 @@ export function Top({ title, sub, back, children }: Props) {
   return (
     <header className="top">
       {back ? (
-        <a className="key back" href={back.href} aria-label={back.label}>
+        <a
+          className="key back"
+          href={back.href}
+          aria-label={back.label}
+          onClick={(event) => {
+            if (back.onGo === undefined) return;
+            event.preventDefault();
+            back.onGo();
+          }}
+        >
           <span className="g g-back" />
         </a>
       ) : null}

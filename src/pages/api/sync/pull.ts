@@ -1,0 +1,21 @@
+import type { APIRoute } from 'astro';
+import { pullCursor } from '#contract/pull.ts';
+import { database } from '#server/db/connection.ts';
+import { HttpProblem } from '#server/http/http-problem.ts';
+import { pullChanges } from '#server/sync/pull-changes.ts';
+
+const LARGEST_PAGE = 2000;
+const UUID = /^[0-9a-f-]{36}$/;
+
+export const GET: APIRoute = async ({ locals, url }) => {
+  const { station } = locals;
+  if (station === undefined) throw new HttpProblem(401, 'no-station', 'No station', 'Sign in on this device first.');
+  const cursor = pullCursor.safeParse(url.searchParams.get('cursor') ?? '');
+  if (!cursor.success) throw new HttpProblem(400, 'bad-cursor', 'Bad cursor', 'Start again without a cursor.');
+  const limit = Math.min(LARGEST_PAGE, Math.max(1, Number(url.searchParams.get('limit')) || 500));
+  const install = url.searchParams.get('install') ?? '';
+  const installId = UUID.test(install) ? install : undefined;
+  return Response.json(
+    await pullChanges(database(), station.shopId, { cursor: cursor.data, limit, installId, now: new Date() }),
+  );
+};

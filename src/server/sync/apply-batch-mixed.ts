@@ -1,0 +1,157 @@
+import type { Addition, Filled, OperationBody } from '#contract/operation-bodies.ts';
+import { inherit } from '#domain/compatibility.ts';
+import { type Composition, blend } from '#domain/composition.ts';
+import type { Milligrams } from '#domain/mass.ts';
+import { type BucketRow, moveBucket } from '#server/repositories/buckets.ts';
+import { requireOwn } from '#server/repositories/require-own.ts';
+import { type ApplyContext, RejectedError } from './apply-context.ts';
+import { drawLots } from './draw-lots.ts';
+import { insertBucket } from './insert-bucket.ts';
+import { type Source, readSources } from './read-sources.ts';
+
+type BatchMixed = Extract<OperationBody, { type: 'batch-mixed' }>['body'];
+
+/** A mixed batch: its additions, what it took from lots and buckets, and the labelled tubs that hold it now. */
+export async function applyBatchMixed(context: ApplyContext, body: BatchMixed): Promise<void> {
+  const total = sum(body.additions.map((addition) => addition.actualMg));
+  if (total !== sum(body.filled.map((tub) => tub.massMg))) {
+    throw new RejectedError('sum', 'What was filled is not what was weighed in.');
+  }
+  await requireParts(context, body);
+  const revision = await requireRevision(context, body);
+  const sources = await readSources(context, body.additions);
+  await insertBatch(context, body, total);
+  await insertAdditions(context, body);
+  await drawLots(context, body.additions);
+  let n = 1;
+  for (const source of sources)
+    if (source.bucket !== undefined) n = await takeFrom(context, source.bucket, source.addition, n);
+  const mixture = mixtureOf(sources);
+  const inherited = inherit(sources);
+  for (const tub of body.filled) {
+    await insertBucket(context, { ...tubOf(context, body, tub), ...inherited, ...revision, composition: mixture }, n++);
+    await insertParents(context, tub, sources);
+  }
+}
+
+async function requireParts(context: ApplyContext, body: BatchMixed): Promise<void> {
+  const { additions } = body;
+  await requireOwn(context, 'jobs', body.jobId);
+  await requireOwn(context, 'scales', ...additions.map((addition) => addition.scaleId));
+  await requireOwn(context, 'people', ...additions.map((addition) => addition.actorId));
+  await requireOwn(
+    context,
+    'components',
+    ...additions.map((addition) => (addition.kind === 'component' ? addition.componentId : null)),
+  );
+  await requireOwn(
+    context,
+    'lots',
+    ...additions.map((addition) => (addition.kind === 'component' ? addition.lotId : null)),
+  );
+  await requireOwn(context, 'containers', ...body.filled.map((tub) => tub.containerId));
+  await requireOwn(context, 'locations', ...body.filled.map((tub) => tub.locationId));
+}
+
+async function requireRevision({ trx, shopId }: ApplyContext, body: BatchMixed) {
+  const row = await trx
+    .selectFrom('formulaRevisions as r')
+    .innerJoin('formulas as f', (join) => join.onRef('f.shopId', '=', 'r.shopId').onRef('f.id', '=', 'r.formulaId'))
+    .select(['f.name', 'r.familyId', 'r.lab', 'r.hiding'])
+    .where('r.shopId', '=', shopId)
+    .where('r.formulaId', '=', body.formulaId)
+    .where('r.revision', '=', body.revision)
+    .executeTakeFirst();
+  if (row === undefined) throw new RejectedError('no-such-formula', 'There is no such formula revision in this shop.');
+  return row;
+}
+
+async function insertBatch(
+  { trx, shopId, seq, operation, at }: ApplyContext,
+  body: BatchMixed,
+  total: number,
+): Promise<void> {
+  await trx
+    .insertInto('batches')
+    .values({
+      shopId,
+      id: body.batchId,
+      opId: operation.opId,
+      formulaId: body.formulaId,
+      revision: body.revision,
+      plannedMg: body.plannedMg,
+      actualMg: total,
+      reusedMg: sum(body.additions.map((addition) => (addition.kind === 'bucket' ? addition.actualMg : 0))),
+      state: body.release === null ? 'mixed' : 'released',
+      light: body.release?.light ?? null,
+      releasedBy: body.release === null ? null : operation.actorId,
+      mixedBy: operation.actorId,
+      mixedAt: at,
+      jobId: body.jobId,
+      rush: body.rush,
+      changeSeq: seq,
+    })
+    .execute();
+}
+
+async function insertAdditions({ trx, shopId }: ApplyContext, body: BatchMixed): Promise<void> {
+  const rows = body.additions.map((addition, index) => ({
+    shopId,
+    batchId: body.batchId,
+    n: index + 1,
+    actorId: addition.actorId,
+    scaleId: addition.scaleId,
+    componentId: addition.kind === 'component' ? addition.componentId : null,
+    lotId: addition.kind === 'component' ? addition.lotId : null,
+    bucketId: addition.kind === 'bucket' ? addition.bucketId : null,
+    plannedMg: addition.plannedMg,
+    actualMg: addition.actualMg,
+    addedAt: new Date(addition.at),
+  }));
+  await trx.insertInto('additions').values(rows).execute();
+}
+
+/** What the books still hold of a tub that was scraped empty stays on its wall. */
+async function takeFrom(context: ApplyContext, bucket: BucketRow, addition: Addition, n: number): Promise<number> {
+  const empties = addition.kind === 'bucket' && addition.empties;
+  const rest = bucket.balanceMg - addition.actualMg;
+  const movements = [{ kind: 'folded-in' as const, deltaMg: -addition.actualMg }];
+  if (!empties) return moveBucket(context, bucket, movements, {}, n);
+  const scraped = [...movements, ...(rest === 0 ? [] : [{ kind: 'wall-loss' as const, deltaMg: -rest }])];
+  return moveBucket(context, bucket, scraped, { state: 'empty', locationId: null }, n);
+}
+
+/** Unknown as soon as one source is unknown. */
+function mixtureOf(sources: readonly Source[]): Composition {
+  if (sources.some((source) => source.composition.size === 0)) return new Map();
+  return blend(
+    sources.map((source) => ({ composition: source.composition, mass: source.addition.actualMg as Milligrams })),
+  );
+}
+
+function tubOf({ operation, at }: ApplyContext, body: BatchMixed, tub: Filled) {
+  return {
+    ...tub,
+    formulaId: body.formulaId,
+    revision: body.revision,
+    batchId: body.batchId,
+    filledAt: at,
+    filledBy: operation.actorId,
+    released: body.release !== null,
+    jobId: body.jobId,
+  };
+}
+
+async function insertParents({ trx, shopId }: ApplyContext, tub: Filled, sources: readonly Source[]): Promise<void> {
+  const masses = new Map<string, number>();
+  for (const { bucket, addition } of sources) {
+    if (bucket !== undefined) masses.set(bucket.id, (masses.get(bucket.id) ?? 0) + addition.actualMg);
+  }
+  if (masses.size === 0) return;
+  const rows = [...masses].map(([parentId, massMg]) => ({ shopId, childId: tub.bucketId, parentId, massMg }));
+  await trx.insertInto('bucketParents').values(rows).execute();
+}
+
+function sum(masses: readonly number[]): number {
+  return masses.reduce((total, mass) => total + mass, 0);
+}

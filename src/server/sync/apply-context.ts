@@ -1,0 +1,24 @@
+import type { Operation } from '#contract/operation.ts';
+import type { ShopTransaction } from '#server/db/in-shop.ts';
+
+/** What the effects of one operation share. */
+export interface ApplyContext {
+  trx: ShopTransaction;
+  shopId: string;
+  /** This push's place in the shop's order of changes. */
+  seq: number;
+  operation: Operation;
+  /** Business time: the device's, corrected, not after it was received. */
+  at: Date;
+}
+
+/** Why an operation is not accepted, in a sentence for the technician. */
+export class RejectedError extends Error {
+  override name = 'RejectedError';
+  readonly code: string;
+
+  constructor(code: string, detail: string) {
+    super(detail);
+    this.code = code;
+  }
+}
