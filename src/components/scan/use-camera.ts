@@ -28,7 +28,7 @@ export function useCamera(video: RefObject<HTMLVideoElement | null>, onText: (te
         stop = runCamera(video.current, {
           onState: setState,
           onTorch: (light) => setTorch(light === undefined ? undefined : { light }),
-          onText: told,
+          onText: (text) => told(text),
         });
       },
       () => setState('no-reader'),
@@ -45,7 +45,14 @@ export function useCamera(video: RefObject<HTMLVideoElement | null>, onText: (te
     torch:
       torch === undefined
         ? undefined
-        : { lit, toggle: () => void torch.light(!lit).then(() => setLit(!lit), () => setTorch(undefined)) },
+        : {
+            lit,
+            toggle: () =>
+              void torch.light(!lit).then(
+                () => setLit(!lit),
+                () => setTorch(undefined),
+              ),
+          },
     retry: () => setAttempt(attempt + 1),
   };
 }
