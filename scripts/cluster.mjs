@@ -22,7 +22,7 @@ export async function enterCluster(name, { throwAway = false } = {}) {
   const cluster = { programs, folder: path.join(home, name), unsafe: throwAway };
   const users = path.join(home, `${name}.users`);
   const lock = path.join(home, `${name}.lock`);
-  const me = path.join(users, String(process.pid));
+  const me = path.join(users, `${process.pid}.${randomBytes(4).toString('hex')}`);
 
   const opened = await withLock(lock, async () => {
     const running = findRunningPort(cluster);
@@ -39,7 +39,7 @@ export async function enterCluster(name, { throwAway = false } = {}) {
   const leave = () =>
     withLock(lock, async () => {
       fs.rmSync(me, { force: true });
-      const others = fs.readdirSync(users).map(Number).filter(isAlive);
+      const others = fs.readdirSync(users).map((name) => Number.parseInt(name, 10)).filter(isAlive);
       if (others.length === 0 && findRunningPort(cluster) !== undefined) stopCluster(cluster);
     });
   return { ...opened, leave };
