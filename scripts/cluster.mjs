@@ -39,7 +39,10 @@ export async function enterCluster(name, { throwAway = false } = {}) {
   const leave = () =>
     withLock(lock, async () => {
       fs.rmSync(me, { force: true });
-      const others = fs.readdirSync(users).map((name) => Number.parseInt(name, 10)).filter(isAlive);
+      const others = fs
+        .readdirSync(users)
+        .map((name) => Number.parseInt(name, 10))
+        .filter(isAlive);
       if (others.length === 0 && findRunningPort(cluster) !== undefined) stopCluster(cluster);
     });
   return { ...opened, leave };

@@ -58,10 +58,10 @@ function serverEnv(settings, { appUrl }) {
   return {
     DATABASE_URL: appUrl,
     // The server never holds the owner's rights.
-    MIGRATE_DATABASE_URL: '',
+    MIGRATE_DATABASE_URL: undefined,
     PORT: String(settings.PORT),
     HOST: settings.HOST,
-    PUBLIC_ORIGIN: settings.PUBLIC_ORIGIN ?? '',
+    PUBLIC_ORIGIN: settings.PUBLIC_ORIGIN,
     TRUST_PROXY: settings.TRUST_PROXY,
     GRANT_KEYS: settings.GRANT_KEYS ?? requireGrantKeys(),
   };

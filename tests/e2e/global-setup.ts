@@ -32,7 +32,10 @@ export default async function setup(project: TestProject) {
     });
     project.provide('baseUrl', server.url);
     project.provide('databaseUrl', database.ownerUrl);
-    project.provide('superuserUrl', Object.assign(new URL(cluster.clusterUrl), { pathname: new URL(database.ownerUrl).pathname }).href);
+    project.provide(
+      'superuserUrl',
+      Object.assign(new URL(cluster.clusterUrl), { pathname: new URL(database.ownerUrl).pathname }).href,
+    );
     project.provide('serverPid', server.pid);
     return async () => {
       server.stop();
