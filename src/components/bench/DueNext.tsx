@@ -33,7 +33,7 @@ export function DueNext({ mixes }: { mixes: boolean }) {
             <div>
               <b>{formula?.name ?? 'Formula not on this device'}</b>
               <small className="ink2">
-                {formatDue(job.due, station.shop.locale, now)} · {job.number}
+                {formatDue(job.due, station.shop.locale, now)} · <span className="nowrap">{job.number}</span>
               </small>
             </div>
             <span className="num">

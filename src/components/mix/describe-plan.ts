@@ -36,7 +36,9 @@ function deviationInWords(plan: FoldInPlan, problem: FoldInProblem): string {
   for (const id of new Set([...masses.keys(), ...problem.target.keys()])) {
     const target = problem.target.get(id) ?? 0;
     const limit = problem.tolerance.get(id) ?? 0;
-    const deviation = Math.abs(((masses.get(id) ?? 0) / plan.batch) * 1e9 - target);
+    // A scale step of rounding is allowed beside the tolerance, so it does not count against it.
+    const rounding = (problem.readability / plan.batch) * 1e9;
+    const deviation = Math.max(0, Math.abs(((masses.get(id) ?? 0) / plan.batch) * 1e9 - target) - rounding);
     const scale = target > 0 ? target : 1e9;
     if (limit > 0 && deviation / limit > worst.used) {
       worst = { used: deviation / limit, deviation: (deviation / scale) * 100, limit: (limit / scale) * 100 };
