@@ -1,3 +1,4 @@
+import type { CSSProperties } from 'react';
 import type { Row } from '#contract/rows.ts';
 import type { Act } from './bucket-acts.ts';
 import type { SheetAct } from './use-act.ts';
@@ -32,8 +33,12 @@ export function ActKeys({
       </div>
     );
   }
+  const others = acts.length - 1;
   return (
-    <div className={`dock acts ${acts.length - 1 > A_ROW ? 'deep' : ''}`}>
+    <div
+      className={`dock acts ${others > A_ROW ? 'deep' : ''}`}
+      style={{ '--keys': others || 1, '--few': Math.min(others, A_ROW) || 1 } as CSSProperties}
+    >
       {acts.map((act, n) => {
         const look = n === 0 && act !== 'label' ? 'key go' : 'key';
         const way = wayOf(act, tub);

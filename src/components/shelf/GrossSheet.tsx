@@ -36,7 +36,7 @@ export function GrossSheet(props: Props) {
   const net = ok === undefined ? undefined : grams(ok.weighed.netMg);
   return (
     <form
-      className="contents"
+      className="gross-form"
       onSubmit={(event) => {
         event.preventDefault();
         const weighed = entry.submit();

@@ -10,7 +10,7 @@ interface Props {
 export function PlaceField({ locations, value, onChoose }: Props) {
   const places = [...locations.values()].sort((a, b) => a.code.localeCompare(b.code, 'en', { numeric: true }));
   return (
-    <label className="field">
+    <label className="field beside">
       <span>Place</span>
       <select
         className="box"

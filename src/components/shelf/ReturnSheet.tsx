@@ -13,9 +13,9 @@ import { useRecord } from './use-record.ts';
 type Condition = Extract<OperationBody, { type: 'bucket-returned' }>['body']['condition'];
 
 const CONDITIONS: readonly { value: Condition; name: string; means: string }[] = [
-  { value: 'clean', name: 'Clean', means: 'Clean: ready for the next batch.' },
+  { value: 'clean', name: 'Clean', means: '' },
   { value: 'lint', name: 'Lint', means: 'Lint: strain before use.' },
-  { value: 'reduced', name: 'Reduced', means: 'Reduced at the press: say by how much.' },
+  { value: 'reduced', name: 'Reduced', means: 'Reduced: write it on the tub.' },
   { value: 'dirty', name: 'Dirty', means: 'Dirty: goes to quarantine.' },
 ];
 

@@ -30,31 +30,31 @@ export function ShelfControls({ query, onChange, facts }: Props) {
           onChange={(event) => onChange({ text: event.target.value })}
         />
       </label>
-      <label className="field">
-        <span>Family</span>
-        <select className="box" value={query.familyId} onChange={(event) => onChange({ familyId: event.target.value })}>
-          <option value="">All families</option>
-          {families.map((family) => (
-            <option key={family.id} value={family.id}>
-              {family.name}
-            </option>
-          ))}
-        </select>
-      </label>
-      <label className="field">
-        <span>Order</span>
-        <select
-          className="box"
-          value={query.sort}
-          onChange={(event) => onChange({ sort: event.target.value as ShelfSort })}
-        >
-          {SORTS.map((sort) => (
-            <option key={sort.value} value={sort.value}>
-              {sort.name}
-            </option>
-          ))}
-        </select>
-      </label>
+      <select
+        className="box"
+        aria-label="Family"
+        value={query.familyId}
+        onChange={(event) => onChange({ familyId: event.target.value })}
+      >
+        <option value="">All families</option>
+        {families.map((family) => (
+          <option key={family.id} value={family.id}>
+            {family.name}
+          </option>
+        ))}
+      </select>
+      <select
+        className="box"
+        aria-label="Order"
+        value={query.sort}
+        onChange={(event) => onChange({ sort: event.target.value as ShelfSort })}
+      >
+        {SORTS.map((sort) => (
+          <option key={sort.value} value={sort.value}>
+            {sort.name}
+          </option>
+        ))}
+      </select>
       {query.batchId === null ? null : (
         <button type="button" className="key" onClick={() => onChange({ batchId: null })}>
           Show the whole shelf

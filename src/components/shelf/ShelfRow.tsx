@@ -1,3 +1,4 @@
+import { Fragment } from 'react';
 import { Mass } from '#components/ui/Mass.tsx';
 import { Strip } from '#components/ui/Strip.tsx';
 import type { Row } from '#contract/rows.ts';
@@ -13,7 +14,14 @@ export function ShelfRow({ tub, facts, now }: { tub: Row<'buckets'>; facts: Plac
       <div>
         <b className="wrap-anywhere">{tub.name}</b>
         <small className="ink2">
-          {formatBucketCode(tub.code)} · {placeOf(tub, facts)} · {ageOf(tub, now)} · {GRADES[tub.grade].word}
+          {[formatBucketCode(tub.code), placeOf(tub, facts), ageOf(tub, now), GRADES[tub.grade].word].map(
+            (piece, n) => (
+              <Fragment key={piece}>
+                {n === 0 ? null : ' · '}
+                <span className="whitespace-nowrap">{piece}</span>
+              </Fragment>
+            ),
+          )}
         </small>
         {flag === undefined ? null : <span className="badge g-warn whitespace-normal">{flag}</span>}
       </div>

@@ -26,21 +26,23 @@ interface Props {
 export function Tub({ tub, facts, acts, note, onAct }: Props) {
   const grade = GRADES[tub.grade];
   const formula = tub.formulaId === null ? undefined : facts.formulas.get(tub.formulaId);
-  const what = tub.filledMg > tub.balanceMg || tub.generation > 0 ? 'leftover' : 'full';
   return (
     <>
       <Top title={formatBucketCode(tub.code)} back={backToShelf()}>
         <span className={`badge ${grade.glyph}`}>{grade.word}</span>
       </Top>
       {note === undefined ? null : <DoneNote text={note} />}
-      <div className="bucket-cols stack gap-4">
+      <div className="bucket-cols stack">
         <section className="hero stack gap-3" aria-label="Tub">
           <Strip lab={tub.lab} hiding={tub.hiding} />
           <div className="name">
             <div>
               <h2>{tub.name}</h2>
               <span className="ink2">
-                {formula === undefined ? 'No formula' : `${formula.code} r${tub.revision}`} · {what}
+                {formula === undefined ? 'No formula' : `${formula.code} r${tub.revision}`} · of{' '}
+                <span className="whitespace-nowrap">
+                  <Mass mg={tub.filledMg} />
+                </span>
               </span>
             </div>
             <span className="num" data-balance={tub.balanceMg}>

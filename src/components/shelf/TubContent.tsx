@@ -2,18 +2,20 @@ import { Mass } from '#components/ui/Mass.tsx';
 import { useStation } from '#components/ui/station-context.ts';
 import type { Row } from '#contract/rows.ts';
 import { formatBucketCode } from '#domain/bucket-code.ts';
+import { TubCare } from './TubFacts.tsx';
 import { largestShares } from './describe-bucket.ts';
 import type { ShopFacts } from './use-shop-facts.ts';
 
 const MOST = 6;
 const PPB_A_PERCENT = 1e7;
 
-/** What is in it, largest first, and the leftovers that went into it. */
+/** What is in it, largest first, the leftovers that went into it, and what to mind. */
 export function TubContent({ tub, facts }: { tub: Row<'buckets'>; facts: ShopFacts }) {
   return (
     <div className="stack gap-6">
       <Shares tub={tub} facts={facts} />
       <Parents tub={tub} facts={facts} />
+      <TubCare tub={tub} />
     </div>
   );
 }

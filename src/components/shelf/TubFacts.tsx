@@ -16,13 +16,7 @@ export function TubFacts({ tub, facts }: { tub: Row<'buckets'>; facts: ShopFacts
   const lines: [string, ReactNode][] = [
     ['Family', facts.families.get(tub.familyId)?.name ?? 'Not on this device'],
     ['Place', placeOf(tub, facts)],
-    [
-      'Filled',
-      <>
-        {formatDay(tub.filledAt, locale)}, {ageOf(tub, new Date())}, <Mass mg={tub.filledMg} />
-        {filledBy === undefined ? '' : `, ${filledBy}`}
-      </>,
-    ],
+    ['Filled', [formatDay(tub.filledAt, locale), ageOf(tub, new Date()), filledBy].filter(Boolean).join(', ')],
     ['Use by', tub.useBy === null ? 'Not given' : formatDay(tub.useBy, locale)],
     [
       'Tare',
@@ -31,11 +25,27 @@ export function TubFacts({ tub, facts }: { tub: Row<'buckets'>; facts: ShopFacts
       </>,
     ],
     ['Released', tub.released ? released || 'Yes' : 'No'],
-    ['Returned ink', tub.generation > 0 ? 'Contains returned ink' : 'None'],
   ];
+  if (tub.generation > 0) lines.push(['Note', 'Contains returned ink']);
+  return <Facts lines={lines} />;
+}
+
+/** Cure, limits and hazards, as they came with what went in. */
+export function TubCare({ tub }: { tub: Row<'buckets'> }) {
+  const lines: [string, ReactNode][] = [];
   if (tub.cureC !== null) lines.push(['Cure', `${tub.cureC} °C`]);
   if (tub.restrictions.length > 0) lines.push(['Limits', tub.restrictions.join(', ')]);
   if (tub.hazards.length > 0) lines.push(['Hazards', tub.hazards.join(' ')]);
+  if (lines.length === 0) return null;
+  return (
+    <section className="stack">
+      <h2>Care</h2>
+      <Facts lines={lines} />
+    </section>
+  );
+}
+
+function Facts({ lines }: { lines: readonly [string, ReactNode][] }) {
   return (
     <dl className="facts">
       {lines.map(([name, value]) => (

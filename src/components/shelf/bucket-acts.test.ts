@@ -8,6 +8,7 @@ const tub = (change: Partial<Tub> = {}): Tub => ({
   released: true,
   needsRecount: false,
   batchId: 'a batch',
+  grade: 'untouched',
   ...change,
 });
 
@@ -27,6 +28,10 @@ describe('what may be done with a tub', () => {
   it('is released first when nobody has, and issued unreleased only by those who may release', () => {
     expect(actsFor(tub({ released: false }), 'mixer').slice(0, 2)).toEqual(['release', 'issue']);
     expect(actsFor(tub({ released: false }), 'operator')).toEqual(['return', 'reweigh', 'label']);
+  });
+  it('is not used up while nobody knows what is in it', () => {
+    expect(actsFor(tub({ grade: 'unknown' }), 'mixer')).not.toContain('use-up');
+    expect(actsFor(tub({ grade: 'assumed' }), 'mixer')).toContain('use-up');
   });
   it('is neither used nor issued in quarantine', () => {
     expect(actsFor(tub({ state: 'quarantine' }), 'owner')).toEqual(['reweigh', 'label', 'discard']);

@@ -22,7 +22,7 @@ const BY_STATE: Record<Row<'buckets'>['state'], readonly Act[]> = {
   discarded: [],
 };
 
-type Tub = Pick<Row<'buckets'>, 'state' | 'released' | 'needsRecount' | 'batchId'>;
+type Tub = Pick<Row<'buckets'>, 'state' | 'released' | 'needsRecount' | 'batchId' | 'grade'>;
 
 /** What this person may do with a tub where it is now. */
 export function actsFor(tub: Tub, role: Role): readonly Act[] {
@@ -39,7 +39,7 @@ export function mayRelease(role: Role): boolean {
 
 function fits(act: Act, tub: Tub, role: Role): boolean {
   if (act === 'label') return true;
-  if (act === 'use-up' && (!tub.released || tub.needsRecount)) return false;
+  if (act === 'use-up' && (!tub.released || tub.needsRecount || tub.grade === 'unknown')) return false;
   if (act === 'issue' && !tub.released && !mayRelease(role)) return false;
   return mayRecord(role, RECORDS[act]);
 }

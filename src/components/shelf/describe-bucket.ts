@@ -28,11 +28,11 @@ export function placeOf(tub: Tub, { locations, jobs }: PlaceNames): string {
   return shelf ?? 'No place yet';
 }
 
-/** "today", "1 day", "12 days" since it was filled. */
+/** "today", "1 day ago", "12 days ago": when it was filled. */
 export function ageOf(tub: Tub, now: Date): string {
   const days = ageInDays(tub.filledAt, now);
   if (days === 0) return 'today';
-  return days === 1 ? '1 day' : `${days} days`;
+  return days === 1 ? '1 day ago' : `${days} days ago`;
 }
 
 /** True from the day after its use-by. */
