@@ -28,7 +28,7 @@ export class RecordError extends Error {
 export async function recordOperation(station: Station, body: OperationBody, deps: Deps = here): Promise<Operation> {
   const seen = await seenNow(station, body);
   const { outbox } = station;
-  return outbox.transaction('rw', outbox.ops, outbox.keys, () => enqueue(station, body, seen, deps));
+  return outbox.transaction('rw', outbox.ops, outbox.keys, async () => enqueue(station, body, seen, deps));
 }
 
 /** Closes an open batch: its operation is queued and the weighing removed in one transaction. @throws RecordError */
@@ -50,7 +50,7 @@ export async function finishWeighing(
 
 /** The next tub code of this install; each is given once. */
 export async function takeBucketCode(station: Station): Promise<string> {
-  const counter = await station.outbox.transaction('rw', station.outbox.keys, () =>
+  const counter = await station.outbox.transaction('rw', station.outbox.keys, async () =>
     nextOf(station.outbox, 'tubCounter'),
   );
   return makeBucketCode(station.codePrefix, counter);

@@ -52,7 +52,8 @@ async function readShown(station: Station): Promise<Shown> {
   const [buckets, batches, position] = await cache.transaction(
     'r',
     [cache.rows('buckets'), cache.rows('batches'), cache.meta],
-    () => Promise.all([cache.rows('buckets').toArray(), cache.rows('batches').toArray(), cache.meta.get('position')]),
+    async () =>
+      Promise.all([cache.rows('buckets').toArray(), cache.rows('batches').toArray(), cache.meta.get('position')]),
   );
   const seq = position?.seq ?? 0;
   const queued = await outbox.ops.orderBy('deviceSeq').toArray();

@@ -29,7 +29,7 @@ export async function openStation(browser: Browser = here()): Promise<Station | 
   const { current } = readInstalls(browser.storage);
   if (current === null) return undefined;
   const outbox = new Outbox(current.shopId, current.installId);
-  const [grant, keys, shop, station, codePrefix, clock] = await outbox.transaction('r', outbox.keys, () =>
+  const [grant, keys, shop, station, codePrefix, clock] = await outbox.transaction('r', outbox.keys, async () =>
     Promise.all([
       findKey(outbox, 'grant'),
       findKey(outbox, 'publicKeys'),

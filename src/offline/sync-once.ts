@@ -26,7 +26,9 @@ async function exchange(
 
 /** A live session gives a fresh grant and station credential. */
 async function renew(station: Station, deps: SyncDeps): Promise<boolean> {
-  const response = await deps.fetch(`/api/auth/renew?install=${station.installId}`, { method: 'POST' }).catch(() => undefined);
+  const response = await deps
+    .fetch(`/api/auth/renew?install=${station.installId}`, { method: 'POST' })
+    .catch(() => undefined);
   if (response === undefined || !response.ok) return false;
   const answer = signInResponse.safeParse(await response.json().catch(() => undefined));
   if (!answer.success) return false;

@@ -141,12 +141,11 @@ describe.sequential('the main job', () => {
 
 async function logAsPlanned(): Promise<void> {
   const planned = await readPlanned(page);
-  const step = await page.locator('.step').textContent();
+  const shown = async () => (await page.locator('.step').allTextContents())[0] ?? '';
+  const step = await shown();
   typed.push(planned);
   await typeReading(page, planned);
-  await expect
-    .poll(async () => ((await page.locator('.step').count()) === 0 ? '' : page.locator('.step').textContent()))
-    .not.toBe(step);
+  await expect.poll(shown).not.toBe(step);
 }
 
 function waiting(on: Page): Promise<string | null> {
