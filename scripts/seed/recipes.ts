@@ -1,3 +1,4 @@
+import { FIRST, SECOND } from './colour-words.ts';
 import { INKS } from './inks.ts';
 import type { Random } from './random.ts';
 
@@ -8,51 +9,6 @@ export interface Recipe {
   /** Newest last; each is a list of ink code and parts. */
   revisions: { state: 'draft' | 'approved' | 'retired'; parts: [string, string][] }[];
 }
-
-const FIRST = [
-  'Harbour',
-  'Winter',
-  'Kiln',
-  'Pine',
-  'Mustard',
-  'Heather',
-  'Pool',
-  'Night',
-  'Chalk',
-  'Copper',
-  'Meadow',
-  'Slate',
-  'Plum',
-  'Ember',
-  'Lagoon',
-  'Barley',
-  'Fern',
-  'Brick',
-  'Orchid',
-  'Storm',
-];
-const SECOND = [
-  'dusk',
-  'sky',
-  'red',
-  'shade',
-  'field',
-  'hill',
-  'edge',
-  'walk',
-  'line',
-  'gate',
-  'drift',
-  'stone',
-  'bloom',
-  'glow',
-  'bay',
-  'lane',
-  'leaf',
-  'wall',
-  'mist',
-  'front',
-];
 
 /** Pigments of a colour and their proportion at full strength, of 100 parts. */
 const ARCHETYPES: readonly [string, number][][] = [

@@ -4,7 +4,7 @@ import { codePrefix } from '#domain/bucket-code.ts';
 import { hashPassword } from '#server/auth/passwords.ts';
 import { type Database, openDatabase } from '#server/db/connection.ts';
 import { inShop } from '#server/db/in-shop.ts';
-import { demoSignIns } from '../demo-sign-ins.mjs';
+import { demoSignIns } from '#scripts/demo-sign-ins.mjs';
 import { insertFormulas, insertJobs } from './fill-formulas.ts';
 import { insertInks, insertPeople, insertPlaces, insertShop } from './fill-shop.ts';
 import { History } from './histories.ts';
