@@ -55,7 +55,7 @@ function Field({
   const input = useRef<HTMLInputElement>(null);
   useEffect(() => {
     if (entry.field === field) input.current?.focus();
-  }, [entry.field, field, entry.tried]);
+  }, [entry.field, field, entry.turn]);
   return (
     <label className="field">
       <span>{label}</span>

@@ -12,8 +12,8 @@ import { useRecord } from './use-record.ts';
 
 type Condition = Extract<OperationBody, { type: 'bucket-returned' }>['body']['condition'];
 
-const CONDITIONS: readonly { value: Condition; name: string; means: string }[] = [
-  { value: 'clean', name: 'Clean', means: '' },
+const CONDITIONS: readonly { value: Condition; name: string; means?: string }[] = [
+  { value: 'clean', name: 'Clean' },
   { value: 'lint', name: 'Lint', means: 'Lint: strain before use.' },
   { value: 'reduced', name: 'Reduced', means: 'Reduced: write it on the tub.' },
   { value: 'dirty', name: 'Dirty', means: 'Dirty: goes to quarantine.' },
@@ -28,6 +28,7 @@ export function ReturnSheet({ tub, facts, onClose, onDone }: SheetProps) {
   const [locationId, setLocationId] = useState(tub.locationId);
   const grams = (mg: number) => formatGrams(mg as Milligrams, 100 as Milligrams, locale);
   const place = locationId === null ? undefined : facts.locations.get(locationId)?.code;
+  const means = CONDITIONS.find((choice) => choice.value === condition)?.means;
   return (
     <GrossSheet
       title="Return"
@@ -65,9 +66,11 @@ export function ReturnSheet({ tub, facts, onClose, onDone }: SheetProps) {
         value={condition}
         onChoose={setCondition}
       />
-      <p className={condition === 'dirty' ? 'badge warn g-warn justify-self-start' : 'ink2'} aria-live="polite">
-        {CONDITIONS.find((entryOf) => entryOf.value === condition)?.means}
-      </p>
+      {means === undefined ? null : (
+        <p className={condition === 'dirty' ? 'badge warn g-warn justify-self-start' : 'ink2'} role="status">
+          {means}
+        </p>
+      )}
       <PlaceField locations={facts.locations} value={locationId} onChoose={setLocationId} />
     </GrossSheet>
   );

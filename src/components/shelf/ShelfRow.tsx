@@ -14,7 +14,7 @@ export function ShelfRow({ tub, facts, now }: { tub: Row<'buckets'>; facts: Plac
       <div>
         <b className="wrap-anywhere">{tub.name}</b>
         <small className="ink2">
-          {[formatBucketCode(tub.code), placeOf(tub, facts), ageOf(tub, now), GRADES[tub.grade].word].map(
+          {[formatBucketCode(tub.code), placeOf(tub, facts), ageOf(tub, now), GRADES[tub.grade].short].map(
             (piece, n) => (
               <Fragment key={piece}>
                 {n === 0 ? null : ' · '}

@@ -39,9 +39,9 @@ export function Tub({ tub, facts, acts, note, onAct }: Props) {
             <div>
               <h2>{tub.name}</h2>
               <span className="ink2">
-                {formula === undefined ? 'No formula' : `${formula.code} r${tub.revision}`} · of{' '}
+                {formula === undefined ? 'No formula' : `${formula.code} r${tub.revision}`} ·{' '}
                 <span className="whitespace-nowrap">
-                  <Mass mg={tub.filledMg} />
+                  of <Mass mg={tub.filledMg} />
                 </span>
               </span>
             </div>

@@ -13,10 +13,14 @@ export function TubFacts({ tub, facts }: { tub: Row<'buckets'>; facts: ShopFacts
   const batch = tub.batchId === null ? undefined : facts.batches.find((entry) => entry.id === tub.batchId);
   const released = [batch?.light, person(batch?.releasedBy)].filter(Boolean).join(', ');
   const filledBy = person(tub.filledBy);
+  const age = ageOf(tub, new Date());
   const lines: [string, ReactNode][] = [
     ['Family', facts.families.get(tub.familyId)?.name ?? 'Not on this device'],
     ['Place', placeOf(tub, facts)],
-    ['Filled', [formatDay(tub.filledAt, locale), ageOf(tub, new Date()), filledBy].filter(Boolean).join(', ')],
+    [
+      'Filled',
+      [formatDay(tub.filledAt, locale), age === 'today' ? age : `${age} ago`, filledBy].filter(Boolean).join(', '),
+    ],
     ['Use by', tub.useBy === null ? 'Not given' : formatDay(tub.useBy, locale)],
     [
       'Tare',

@@ -3,11 +3,12 @@ import type { Row } from '#contract/rows.ts';
 
 type Tub = Row<'buckets'>;
 
-export const GRADES: Record<Tub['grade'], { word: string; glyph: string }> = {
-  untouched: { word: 'Untouched', glyph: 'g-ok' },
-  returned: { word: 'Returned', glyph: 'g-return' },
-  assumed: { word: 'Content assumed', glyph: 'g-ask' },
-  unknown: { word: 'Content unknown', glyph: 'g-ask' },
+/** `short`: where the word stands beside others in a row. */
+export const GRADES: Record<Tub['grade'], { word: string; short: string; glyph: string }> = {
+  untouched: { word: 'Untouched', short: 'Untouched', glyph: 'g-ok' },
+  returned: { word: 'Returned', short: 'Returned', glyph: 'g-return' },
+  assumed: { word: 'Content assumed', short: 'Assumed', glyph: 'g-ask' },
+  unknown: { word: 'Content unknown', short: 'Unknown', glyph: 'g-ask' },
 };
 
 export interface PlaceNames {
@@ -28,11 +29,11 @@ export function placeOf(tub: Tub, { locations, jobs }: PlaceNames): string {
   return shelf ?? 'No place yet';
 }
 
-/** "today", "1 day ago", "12 days ago": when it was filled. */
+/** "today", "1 day", "12 days" since it was filled. */
 export function ageOf(tub: Tub, now: Date): string {
   const days = ageInDays(tub.filledAt, now);
   if (days === 0) return 'today';
-  return days === 1 ? '1 day ago' : `${days} days ago`;
+  return days === 1 ? '1 day' : `${days} days`;
 }
 
 /** True from the day after its use-by. */

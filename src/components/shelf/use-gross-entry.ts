@@ -17,6 +17,8 @@ export interface GrossEntry {
   tried: boolean;
   /** True once it was heavier than recorded and that is being asked about. */
   asked: boolean;
+  /** Counts the times the chosen field is to take the focus again. */
+  turn: number;
   /** What may be recorded now; undefined: there is something to mend or to answer first. */
   submit: () => Extract<GrossVerdict, { state: 'ok' }> | undefined;
   weighAgain: () => void;
@@ -28,6 +30,7 @@ export function useGrossEntry(tub: Row<'buckets'>, scales: readonly Row<'scales'
   const [field, setField] = useState<Field>('gross');
   const [tried, setTried] = useState(false);
   const [asked, setAsked] = useState(false);
+  const [turn, setTurn] = useState(0);
   const anew = useRef(false);
   const limits = useMemo(() => scaleLimits(scales), [scales]);
   const verdict = useMemo(() => readGross(text, tub.balanceMg, limits), [text, tub.balanceMg, limits]);
@@ -49,9 +52,11 @@ export function useGrossEntry(tub: Row<'buckets'>, scales: readonly Row<'scales'
     verdict,
     tried,
     asked,
+    turn,
     submit: () => {
       if (verdict.state !== 'ok') {
         setTried(true);
+        setTurn(turn + 1);
         return undefined;
       }
       if (verdict.weighed.heavierMg > (limits.readability ?? 0) && !asked) {
@@ -63,6 +68,7 @@ export function useGrossEntry(tub: Row<'buckets'>, scales: readonly Row<'scales'
     weighAgain: () => {
       setText('gross', '');
       setField('gross');
+      setTurn(turn + 1);
     },
   };
 }
