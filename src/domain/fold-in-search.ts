@@ -110,7 +110,7 @@ function isFixed(node: Node, n: number): boolean {
 /** Optimised under fixed decisions; where too little fresh ink would be left of something, once more with that kept. */
 function plannedWith(search: Search, decisions: readonly Decision[]): Rounded | undefined {
   const reserve = new Float64Array(search.target.length);
-  for (let tries = 0; tries < 3; tries++) {
+  for (let tries = 0; tries <= search.components.length; tries++) {
     const relaxed = relax(search, decisions, reserve);
     if (relaxed === undefined) return undefined;
     const rounded = roundPlan(search, relaxed.taken, relaxed.batch);

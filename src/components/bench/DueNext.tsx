@@ -36,7 +36,7 @@ export function DueNext({ mixes }: { mixes: boolean }) {
                 {formatDue(job.due, station.shop.locale, now)} · <span className="nowrap">{job.number}</span>
               </small>
             </div>
-            <span className="num">
+            <span className="num text-20">
               {Math.round(colour.needLowMg / 1000)}–{Math.round(colour.needHighMg / 1000)} <u>g</u>
             </span>
           </>

@@ -4,7 +4,7 @@ import { Strip } from '#components/ui/Strip.tsx';
 import { formatClock } from '#components/ui/format-time.ts';
 import { useFormulas } from '#components/ui/use-formulas.ts';
 import { useStation } from '#components/ui/station-context.ts';
-import { readBatches } from '#offline/shown.ts';
+import { readBatches, readShelf } from '#offline/shown.ts';
 
 const MOST = 6;
 
@@ -12,8 +12,10 @@ const MOST = 6;
 export function TodaysBatches() {
   const { station } = useStation();
   const batches = useLiveQuery(() => readBatches(station), [station]);
+  const shelf = useLiveQuery(() => readShelf(station), [station]);
   const formulas = useFormulas();
-  if (batches === undefined || formulas === undefined) return null;
+  if (batches === undefined || shelf === undefined || formulas === undefined) return null;
+  const codes = new Map(shelf.map((tub) => [tub.batchId, tub.code]));
   const today = new Date().toDateString();
   const mixed = batches
     .filter((batch) => new Date(batch.mixedAt).toDateString() === today)
@@ -29,7 +31,7 @@ export function TodaysBatches() {
         const formula = formulas.get(batch.formulaId);
         const revision = formula?.revisions.find((entry) => entry.revision === batch.revision);
         return (
-          <a key={batch.id} className="row" href={`/shelf?batch=${batch.id}`}>
+          <a key={batch.id} className="row" href={codes.has(batch.id) ? `/b/${codes.get(batch.id)}` : '/shelf'}>
             <Strip lab={revision?.lab ?? null} hiding={revision?.hiding ?? 0} />
             <div>
               <b>{formula?.name ?? 'Formula not on this device'}</b>

@@ -78,7 +78,7 @@ export function PlanPicture({
           <text
             x="0"
             y={tubTop + 42}
-            textLength={part.name.length > 12 ? 92 : undefined}
+            textLength={part.name.length > 9 ? 90 : undefined}
             lengthAdjust="spacingAndGlyphs"
           >
             {part.name.length > 18 ? `${part.name.slice(0, 17)}…` : part.name}

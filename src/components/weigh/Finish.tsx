@@ -55,7 +55,7 @@ export function Finish({ weighing, facts }: { weighing: Weighing; facts: WeighFa
         </section>
         <ContainerPicker finish={finish} facts={facts} />
       </div>
-      <div className="dock stack">
+      <div className="dock stack tablet:sticky static">
         {finish.problem === undefined ? null : (
           <p className="badge warn g-warn whitespace-normal" role="alert">
             {finish.problem}

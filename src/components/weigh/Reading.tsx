@@ -1,3 +1,4 @@
+import type { CSSProperties } from 'react';
 import { Gauge } from '#components/ui/Gauge.tsx';
 import { Keypad } from '#components/ui/Keypad.tsx';
 import { useStation } from '#components/ui/station-context.ts';
@@ -33,7 +34,7 @@ export function Reading({
             {words}
           </b>
         </p>
-        <div className={`digits ${digits.length > 5 ? 'many' : ''}`}>
+        <div className="digits" style={{ '--n': Math.max(4, digits.length) } as CSSProperties}>
           {digits}
           <u>g</u>
         </div>

@@ -1,10 +1,9 @@
 import { useState } from 'react';
 import { Mass } from '#components/ui/Mass.tsx';
 import { Top } from '#components/ui/Top.tsx';
-import { useStation } from '#components/ui/station-context.ts';
-import { formatGrams } from '#domain/format-mass.ts';
 import type { Milligrams } from '#domain/mass.ts';
 import type { Weighing } from '#contract/weighing.ts';
+import { LogKey } from './LogKey.tsx';
 import { Overshot } from './Overshot.tsx';
 import { Reading } from './Reading.tsx';
 import { StepList } from './StepList.tsx';
@@ -16,7 +15,6 @@ import { useWakeLock } from './use-wake-lock.ts';
 
 /** One step a screen: what, how much is still to go, the keypad, one action. */
 export function WeighStep({ weighing, facts }: { weighing: Weighing; facts: WeighFacts }) {
-  const { station } = useStation();
   const entry = useStepEntry(weighing, facts);
   const [shownOver, setShownOver] = useState(false);
   useWakeLock();
@@ -74,19 +72,7 @@ export function WeighStep({ weighing, facts }: { weighing: Weighing; facts: Weig
             {entry.problem}
           </p>
         )}
-        <button
-          type="button"
-          className={`key wide log-key ${entry.onTarget ? 'go' : ''}`}
-          disabled={entry.mass === undefined || entry.logging}
-          onClick={() => {
-            if (entry.over === undefined) void entry.log();
-            else setShownOver(true);
-          }}
-        >
-          {entry.mass === undefined
-            ? 'Type the reading'
-            : `Log ${formatGrams(entry.mass, step1, station.shop.locale)} g${entry.onTarget ? ', next step' : ''}`}
-        </button>
+        <LogKey entry={entry} step={step1} onOver={() => setShownOver(true)} />
       </div>
     </>
   );

@@ -16,12 +16,16 @@ export interface StepEntry {
   onTarget: boolean;
   /** Set when logging this would need a repair. */
   over: Overshoot | undefined;
-  emptied: boolean;
-  setEmptied: (emptied: boolean) => void;
+  /** A tub was to be scraped empty and the reading is off: it must be asked whether some is left in it. */
+  asksEmptied: boolean;
   type: (key: string) => void;
-  log: () => Promise<void>;
+  /** `emptied`: the leftover's tub is empty now; as planned when left out. */
+  log: (emptied?: boolean) => Promise<void>;
   logging: boolean;
 }
+
+/** Two in a hundred less than the books say is what a wall keeps; more than that is asked about. */
+const ASK_BELOW = 0.98;
 
 /** The reading of one step, typed on the keypad or the keyboard, and what logging it means. */
 export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
@@ -29,7 +33,7 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
   const step = weighing.remaining[0];
   const [text, setText] = useState('');
   const [logging, setLogging] = useState(false);
-  const [emptied, setEmptied] = useState(step?.kind === 'bucket' && step.empties);
+  const empties = step?.kind === 'bucket' && step.empties;
   const type = (key: string) => setText((before) => typeDigit(before, key));
   useKeyboard(type);
   const read = useMemo(() => readText(text, facts), [text, facts]);
@@ -38,7 +42,7 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
     [weighing, facts, read],
   );
 
-  async function log() {
+  async function log(emptied: boolean = empties) {
     if (read.mass === undefined || step === undefined || logging) return;
     setLogging(true);
     const lotId = step.kind === 'component' ? (facts.lots.get(step.componentId)?.id ?? null) : null;
@@ -60,8 +64,7 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
     ...read,
     onTarget: verdict?.onTarget ?? false,
     over: verdict?.over,
-    emptied,
-    setEmptied,
+    asksEmptied: empties && read.mass !== undefined && read.mass < step.plannedMg * ASK_BELOW,
     type,
     log,
     logging,
