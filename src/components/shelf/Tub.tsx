@@ -14,6 +14,9 @@ import { GRADES } from './describe-bucket.ts';
 import type { SheetAct } from './use-act.ts';
 import type { ShopFacts } from './use-shop-facts.ts';
 
+/** Longer names take the whole width, the mass its own line. */
+const LONG_NAME = 26;
+
 interface Props {
   tub: Row<'buckets'>;
   facts: ShopFacts;
@@ -35,7 +38,7 @@ export function Tub({ tub, facts, acts, note, onAct }: Props) {
       <div className="bucket-cols stack">
         <section className="hero stack gap-3" aria-label="Tub">
           <Strip lab={tub.lab} hiding={tub.hiding} />
-          <div className="name">
+          <div className={tub.name.length > LONG_NAME ? 'name long' : 'name'}>
             <div>
               <h2>{tub.name}</h2>
               <span className="ink2">
