@@ -1,3 +1,4 @@
+import Fraction from 'fraction.js';
 import { type Milligrams, type PartsPerBillion, WHOLE, milligrams } from './mass.ts';
 import { roundToSum } from './round-to-sum.ts';
 
@@ -13,15 +14,15 @@ const DECIMAL = /^\d{1,12}(?:\.\d{1,12})?$/;
 
 /** @param parts decimal strings such as "12.5", each component once @throws CompositionError */
 export function compositionFromParts(parts: readonly { componentId: string; parts: string }[]): Composition {
-  const decimals = Math.max(0, ...parts.map(({ parts: text }) => text.split('.')[1]?.length ?? 0));
-  const amounts = new Map<string, bigint>();
+  const fractions = new Map<string, Fraction>();
   for (const { componentId, parts: text } of parts) {
     if (!DECIMAL.test(text)) throw new CompositionError(`"${text}" is not a number of parts. Write it like 12.5.`);
-    if (amounts.has(componentId))
+    if (fractions.has(componentId))
       throw new CompositionError('A component stands twice in the formula. Keep one line of it.');
-    const [whole, fraction = ''] = text.split('.');
-    amounts.set(componentId, BigInt(whole + fraction.padEnd(decimals, '0')));
+    fractions.set(componentId, new Fraction(text));
   }
+  const common = [...fractions.values()].reduce((all, { d }) => all.lcm(d), new Fraction(1));
+  const amounts = new Map([...fractions].map(([id, part]) => [id, part.mul(common).n] as const));
   return compositionFromAmounts(amounts);
 }
 
