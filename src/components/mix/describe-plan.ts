@@ -20,11 +20,8 @@ export function planFacts(suggestion: Suggestion, locale: string): readonly { gl
     { glyph: 'g-ok', text: suggestion.kind === 'same-recipe' ? 'Same recipe' : deviationInWords(plan, problem) },
   ];
   if (emptied > 0) facts.push({ glyph: 'g-pail', text: emptied === 1 ? 'Tub emptied' : `${emptied} tubs emptied` });
-  const open = plan.objectiveBound - plan.objective;
   facts.push(
-    plan.status === 'best'
-      ? { glyph: 'g-ok', text: 'Best possible' }
-      : { glyph: 'g-ask', text: `At most ${formatGrams(open as Milligrams, 100 as Milligrams, locale)} g more` },
+    plan.status === 'best' ? { glyph: 'g-ok', text: 'Best possible' } : { glyph: 'g-ask', text: 'Not proven best' },
   );
   return facts;
 }
