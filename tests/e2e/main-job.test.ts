@@ -32,7 +32,7 @@ afterAll(async () => {
   fs.rmSync(folder, { recursive: true, force: true });
 });
 
-describe.sequential('the main job', () => {
+describe('the main job', () => {
   test('a mixer signs in, loses the network, and a new tab opens all the same', async () => {
     const first = await signInOn(mixer, baseUrl, 'mixer');
     await mixer.setOffline(true);

@@ -13,7 +13,7 @@ export function planTitle(plan: FoldInPlan, buckets: ReadonlyMap<string, Row<'bu
 }
 
 /** Short badges with their glyph: kind, what is emptied, how sure the figure is. */
-export function planFacts(suggestion: Suggestion, locale: string): readonly { glyph: string; text: string }[] {
+export function planFacts(suggestion: Suggestion): readonly { glyph: string; text: string }[] {
   const { plan, problem } = suggestion;
   const emptied = plan.fromBuckets.filter((from) => from.empties).length;
   const facts = [

@@ -1,4 +1,4 @@
-import { type FormEvent, useRef, useState } from 'react';
+import { type SyntheticEvent, useRef, useState } from 'react';
 import { PailMark } from '#components/ui/PailMark.tsx';
 import { requestSignIn } from '#offline/request-sign-in.ts';
 
@@ -8,7 +8,7 @@ export function SignInPage() {
   const [sending, setSending] = useState(false);
   const alert = useRef<HTMLParagraphElement>(null);
 
-  async function submit(event: FormEvent<HTMLFormElement>) {
+  async function submit(event: SyntheticEvent<HTMLFormElement, SubmitEvent>) {
     event.preventDefault();
     const form = new FormData(event.currentTarget);
     setSending(true);
