@@ -7,8 +7,8 @@ export interface QueuedOperation {
   opId: string;
   deviceSeq: number;
   operation: Operation;
-  /** sent: the server has answered for it; rejected: it waits for a person. */
-  status: 'waiting' | 'sent' | 'rejected';
+  /** sent: the server has it; rejected: it waits for a person; dropped: a person let it go. */
+  status: 'waiting' | 'sent' | 'rejected' | 'dropped';
   changeSeq: number | null;
   problem: Problem | null;
   recordedAt: string;

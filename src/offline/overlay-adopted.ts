@@ -1,5 +1,6 @@
 import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
+import { correctedTime } from './overlay-bucket.ts';
 
 /** A tub from before the books, as the shelf shows it until the server's row arrives. */
 export function adoptedTub(operation: Extract<Operation, { type: 'bucket-adopted' }>): Row<'buckets'> {
@@ -16,7 +17,7 @@ export function adoptedTub(operation: Extract<Operation, { type: 'bucket-adopted
     containerId: body.containerId,
     tareMg: body.tareMg,
     filledMg: mass,
-    filledAt: operation.deviceTime,
+    filledAt: correctedTime(operation),
     filledBy: operation.actorId,
     locationId: body.locationId,
     state: 'shelf',

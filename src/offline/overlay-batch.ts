@@ -4,6 +4,7 @@ import type { Row } from '#contract/rows.ts';
 import { type Parent, inherit } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import { type Milligrams, type PartsPerBillion, WHOLE } from '#domain/mass.ts';
+import { changeTub, correctedTime } from './overlay-bucket.ts';
 import type { OverlayFacts, Shown } from './overlay.ts';
 
 type BatchMixed = Extract<Operation, { type: 'batch-mixed' }>;
@@ -12,7 +13,7 @@ type BatchMixed = Extract<Operation, { type: 'batch-mixed' }>;
 export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: OverlayFacts): Shown {
   const { body } = operation;
   const buckets = new Map(shown.buckets);
-  for (const addition of body.additions) if (addition.kind === 'bucket') takeFrom(buckets, addition);
+  for (const addition of body.additions) if (addition.kind === 'bucket') takeFrom(buckets, operation, addition);
   for (const tub of body.filled) buckets.set(tub.bucketId, newTub(shown, operation, tub, facts));
   const sum = (additions: readonly Addition[]) => additions.reduce((total, addition) => total + addition.actualMg, 0);
   const batches = new Map(shown.batches).set(body.batchId, {
@@ -26,18 +27,25 @@ export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: Overl
     light: body.release?.light ?? null,
     releasedBy: body.release === null ? null : operation.actorId,
     mixedBy: operation.actorId,
-    mixedAt: operation.deviceTime,
+    mixedAt: correctedTime(operation),
     jobId: body.jobId,
     rush: body.rush,
   });
   return { buckets, batches };
 }
 
-function takeFrom(buckets: Map<string, Row<'buckets'>>, addition: Addition & { kind: 'bucket' }): void {
+/** A tub that was scraped empty holds nothing more: what the books still had is wall loss. */
+function takeFrom(
+  buckets: Map<string, Row<'buckets'>>,
+  operation: BatchMixed,
+  addition: Addition & { kind: 'bucket' },
+): void {
   const bucket = buckets.get(addition.bucketId);
   if (bucket === undefined) return;
-  const balanceMg = addition.empties ? 0 : bucket.balanceMg - addition.actualMg;
-  buckets.set(bucket.id, { ...bucket, balanceMg, state: addition.empties ? 'empty' : bucket.state });
+  const change: Partial<Row<'buckets'>> = addition.empties
+    ? { balanceMg: 0, state: 'empty', locationId: null }
+    : { balanceMg: bucket.balanceMg - addition.actualMg };
+  buckets.set(bucket.id, changeTub(bucket, operation, change));
 }
 
 function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: OverlayFacts): Row<'buckets'> {
@@ -56,7 +64,7 @@ function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: Overlay
     containerId: tub.containerId,
     tareMg: tub.tareMg,
     filledMg: tub.massMg,
-    filledAt: operation.deviceTime,
+    filledAt: correctedTime(operation),
     filledBy: operation.actorId,
     locationId: tub.locationId,
     state: 'shelf',
@@ -70,9 +78,7 @@ function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: Overlay
     hazards: [...inherited.hazards],
     reservedFor: null,
     jobId: body.jobId,
-    parents: body.additions.flatMap((addition) =>
-      addition.kind === 'bucket' ? [{ bucketId: addition.bucketId, massMg: addition.actualMg }] : [],
-    ),
+    parents: parentsOf(body.additions),
     lab: revision?.lab ?? null,
     hiding: revision?.hiding ?? 0,
   };
@@ -96,8 +102,22 @@ function mixtureOf(additions: readonly Addition[], shown: Shown): Composition {
   return blend(sources);
 }
 
+/** Largest share first, as the server lists them. */
 function sharesOf(composition: Composition): Row<'buckets'>['composition'] {
-  return [...composition].map(([componentId, ppb]) => ({ componentId, ppb }));
+  const shares = [...composition].map(([componentId, ppb]) => ({ componentId, ppb }));
+  return shares.sort((a, b) => b.ppb - a.ppb || (a.componentId < b.componentId ? -1 : 1));
+}
+
+/** One row a bucket, however often it was weighed from. */
+function parentsOf(additions: readonly Addition[]): Row<'buckets'>['parents'] {
+  const masses = new Map<string, number>();
+  for (const addition of additions) {
+    if (addition.kind !== 'bucket') continue;
+    masses.set(addition.bucketId, (masses.get(addition.bucketId) ?? 0) + addition.actualMg);
+  }
+  return [...masses]
+    .map(([bucketId, massMg]) => ({ bucketId, massMg }))
+    .sort((a, b) => (a.bucketId < b.bucketId ? -1 : 1));
 }
 
 function parentOf(addition: Addition, shown: Shown, facts: OverlayFacts): Parent {

@@ -2,6 +2,7 @@ import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
 import { adoptedTub } from './overlay-adopted.ts';
 import { foldBatchMixed } from './overlay-batch.ts';
+import { changeTub } from './overlay-bucket.ts';
 import { foldReturned } from './overlay-return.ts';
 
 export interface Shown {
@@ -28,17 +29,17 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
     case 'batch-released':
       return foldReleased(shown, operation);
     case 'bucket-issued':
-      return changeBucket(shown, operation.body.bucketId, () => ({
+      return changeBucket(shown, operation, () => ({
         state: 'at-press',
         jobId: operation.body.jobId,
         locationId: null,
       }));
     case 'bucket-returned':
-      return changeBucket(shown, operation.body.bucketId, (bucket) => foldReturned(bucket, operation.body));
+      return changeBucket(shown, operation, (bucket) => foldReturned(bucket, operation.body));
     case 'bucket-relocated':
-      return changeBucket(shown, operation.body.bucketId, () => ({ locationId: operation.body.locationId }));
+      return changeBucket(shown, operation, () => ({ locationId: operation.body.locationId }));
     case 'bucket-recounted':
-      return changeBucket(shown, operation.body.bucketId, (bucket) => ({
+      return changeBucket(shown, operation, (bucket) => ({
         balanceMg: bucket.balanceMg + operation.body.deltaMg,
         tareMg: operation.body.tareMg,
         needsRecount: false,
@@ -46,7 +47,7 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
     case 'bucket-adopted':
       return { ...shown, buckets: new Map(shown.buckets).set(operation.body.bucketId, adoptedTub(operation)) };
     case 'bucket-discarded':
-      return changeBucket(shown, operation.body.bucketId, () => ({ balanceMg: 0, state: 'discarded' }));
+      return changeBucket(shown, operation, () => ({ balanceMg: 0, state: 'discarded', needsRecount: false }));
   }
 }
 
@@ -66,9 +67,16 @@ function foldReleased(shown: Shown, operation: Operation & { type: 'batch-releas
   return { buckets, batches };
 }
 
+type OnOneBucket = Extract<Operation, { body: { bucketId: string } }>;
+
 /** A bucket that is not on this device stays unknown; the server knows it. */
-function changeBucket(shown: Shown, id: string, change: (bucket: Row<'buckets'>) => Partial<Row<'buckets'>>): Shown {
-  const bucket = shown.buckets.get(id);
+function changeBucket(
+  shown: Shown,
+  operation: OnOneBucket,
+  change: (bucket: Row<'buckets'>) => Partial<Row<'buckets'>>,
+): Shown {
+  const bucket = shown.buckets.get(operation.body.bucketId);
   if (bucket === undefined) return shown;
-  return { ...shown, buckets: new Map(shown.buckets).set(id, { ...bucket, ...change(bucket) }) };
+  const changed = changeTub(bucket, operation, change(bucket));
+  return { ...shown, buckets: new Map(shown.buckets).set(bucket.id, changed) };
 }

@@ -1,3 +1,4 @@
+import { problem } from '#contract/problem.ts';
 import { type PullResponse, pullResponse } from '#contract/pull.ts';
 import { type TableName, rows, tableNames } from '#contract/rows.ts';
 import type { Cache } from './cache.ts';
@@ -13,20 +14,23 @@ export interface LoadProgress {
 
 const PAGE = 1000;
 
-/** Pulls pages from the cursor until there is no more; a first load reports its progress. */
+/** Pulls pages from the cursor until there is no more; a load from the beginning reports its progress. */
 export async function pullChanges(
   station: Station,
   deps: SyncDeps,
   onProgress: (progress: LoadProgress) => void,
 ): Promise<SyncResult> {
   const progress: LoadProgress = { done: 0, total: null, bytes: 0 };
+  let startedOver = false;
   for (;;) {
     const position = await station.cache.meta.get('position');
     const first = (position?.completeAt ?? null) === null;
     const page = await fetchPage(station, position?.cursor ?? '', deps);
     if ('kind' in page) return page;
     if (page.refetch) {
-      await startOver(station.cache);
+      if (startedOver) return { kind: 'failed', problem: 'The shop cannot be loaded just now.', retryAfterMs: null };
+      await startOver(station);
+      startedOver = true;
       continue;
     }
     await settleOwn(station, page.answer, deps.now());
@@ -45,14 +49,14 @@ async function fetchPage(station: Station, cursor: string, deps: SyncDeps): Prom
   const query = new URLSearchParams({ cursor, limit: String(PAGE), install: station.installId });
   const response = await deps.fetch(`/api/sync/pull?${query}`).catch(() => undefined);
   if (response === undefined) return { kind: 'offline' };
-  if (response.status === 409) return { refetch: true };
-  const refusal = refusalOf(response);
+  if (response.status === 409 && (await codeOf(response)) === 'must-refetch') return { refetch: true };
+  const refusal = await refusalOf(response, deps.now());
   if (refusal !== null) return refusal;
   const text = await response.text().catch(() => '');
   const answer = pullResponse.safeParse(parseJson(text));
   if (!answer.success)
     return { kind: 'failed', problem: 'The answer was cut off. It tries again.', retryAfterMs: null };
-  return { refetch: false, answer: answer.data, bytes: text.length };
+  return { refetch: false, answer: answer.data, bytes: new TextEncoder().encode(text).length };
 }
 
 /** Own operations that the rows contain count as sent, whether or not the answer to their push arrived. */
@@ -61,7 +65,8 @@ async function settleOwn(station: Station, answer: PullResponse, now: Date): Pro
   await station.outbox.transaction('rw', ops, async () => {
     for (const { opId, changeSeq } of answer.own) {
       const entry = await ops.get(opId);
-      if (entry?.status === 'waiting') await ops.update(opId, { status: 'sent', changeSeq, sentAt: now.toISOString() });
+      if (entry?.status !== 'waiting') continue;
+      await ops.update(opId, { status: 'sent', changeSeq, sentAt: entry.sentAt ?? now.toISOString() });
     }
   });
 }
@@ -90,12 +95,27 @@ function rowOf(name: TableName, row: unknown): unknown {
   return rows[name].parse(row);
 }
 
-async function startOver(cache: Cache): Promise<void> {
+/**
+ * Another state of the server: rows are pulled anew, and what was sent waits again until the rows list it as own or the
+ * push answers `duplicate`, so that a restored database gets back what it lost.
+ */
+async function startOver({ cache, outbox }: Station): Promise<void> {
+  await outbox.ops.where('status').equals('sent').modify({ status: 'waiting', changeSeq: null });
   const tables = tableNames.map((name) => cache.rows(name));
   await cache.transaction('rw', [...tables, cache.meta], async () => {
     for (const table of tables) await table.clear();
     await cache.meta.clear();
   });
+}
+
+async function codeOf(response: Response): Promise<string | undefined> {
+  const parsed = problem.safeParse(
+    await response
+      .clone()
+      .json()
+      .catch(() => undefined),
+  );
+  return parsed.success ? parsed.data.code : undefined;
 }
 
 function parseJson(text: string): unknown {

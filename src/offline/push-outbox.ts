@@ -10,7 +10,7 @@ import type { Outbox, QueuedOperation } from './outbox.ts';
 import type { Station } from './station.ts';
 import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
 
-/** Sends what waits, in the order of recording, until nothing waits or an exchange fails. */
+/** Sends what waits, in the order of recording, until nothing waits, an exchange fails or the server settles nothing. */
 export async function pushOutbox(station: Station, deps: SyncDeps): Promise<SyncResult> {
   for (;;) {
     const batch = await nextBatch(station.outbox);
@@ -32,7 +32,7 @@ async function pushBatch(station: Station, batch: readonly QueuedOperation[], de
     })
     .catch(() => undefined);
   if (response === undefined) return { kind: 'offline' };
-  const refusal = refusalOf(response);
+  const refusal = await refusalOf(response, deps.now());
   if (refusal !== null) return refusal;
   const answer = pushResponse.safeParse(await response.json().catch(() => undefined));
   if (!answer.success || answer.data.requestId !== requestId) {
@@ -40,7 +40,7 @@ async function pushBatch(station: Station, batch: readonly QueuedOperation[], de
   }
   await measureClock(station.outbox, answer.data.serverTime, sentAt, deps.now());
   const settled = await settle(station.outbox, batch, answer.data.results, deps.now());
-  return settled > 0 ? { kind: 'done' } : { kind: 'failed', problem: 'The server asks to wait.', retryAfterMs: null };
+  return settled > 0 ? { kind: 'done' } : { kind: 'held', problem: 'The server takes these logs later.' };
 }
 
 async function nextBatch(outbox: Outbox): Promise<QueuedOperation[]> {

@@ -6,12 +6,14 @@ import {
   operation as operationSchema,
 } from '#contract/operation.ts';
 import type { OperationBody } from '#contract/operation-bodies.ts';
+import { mayRecord } from '#contract/roles.ts';
 import type { Weighing } from '#contract/weighing.ts';
 import { makeBucketCode } from '#domain/bucket-code.ts';
+import { hasLapsed } from './grant-age.ts';
 import { findKey, nextOf } from './outbox-keys.ts';
 import type { Outbox } from './outbox.ts';
 import type { Station } from './station.ts';
-import { touchedBuckets } from './touched-buckets.ts';
+import { bornBuckets, touchedBuckets } from './touched-buckets.ts';
 
 interface Deps {
   now: () => Date;
@@ -57,17 +59,21 @@ export async function takeBucketCode(station: Station): Promise<string> {
 }
 
 async function enqueue(station: Station, body: OperationBody, seen: SeenByBucket, deps: Deps): Promise<Operation> {
-  const { outbox } = station;
+  const { outbox, person } = station;
+  if (!mayRecord(person.role, body.type)) {
+    throw new RecordError(`Not saved: this is not for the role of ${person.role}. Ask a manager.`);
+  }
   const clock = (await findKey(outbox, 'clock')) ?? { offsetMs: 0, uncertaintyMs: 0, lastContact: null };
-  const recordedAt = deps.now().toISOString();
+  const now = deps.now();
+  const recordedAt = now.toISOString();
   const operation = {
     opId: deps.randomId(),
     installId: station.installId,
     deviceSeq: await nextOf(outbox, 'deviceSeq'),
     opVersion: 1 as const,
-    actorId: station.person.id,
+    actorId: person.id,
     grantId: station.grant.id,
-    grantLapsed: station.grant.lapsed,
+    grantLapsed: hasLapsed(station.grant.expiresAt, clock, now),
     deviceTime: recordedAt,
     clock,
     seen: await withPending(outbox, station.installId, seen),
@@ -105,11 +111,12 @@ async function seenNow(station: Station, body: OperationBody): Promise<SeenByBuc
   return Object.fromEntries(ids.map((id, n) => [id, { ...rows[n]?.seen }]));
 }
 
-/** Own operations that still wait are known too. */
+/** Own operations are known too, but for those that the server refused. */
 async function withPending(outbox: Outbox, installId: string, seen: SeenByBucket): Promise<SeenByBucket> {
   const known = structuredClone(seen);
-  for (const queued of await outbox.ops.toArray()) {
-    for (const id of touchedBuckets(queued.operation)) {
+  if (Object.keys(known).length === 0) return known;
+  for (const queued of await outbox.ops.where('status').anyOf('waiting', 'sent').toArray()) {
+    for (const id of [...touchedBuckets(queued.operation), ...bornBuckets(queued.operation)]) {
       const ofBucket = known[id];
       if (ofBucket !== undefined) ofBucket[installId] = Math.max(ofBucket[installId] ?? 0, queued.deviceSeq);
     }

@@ -1,23 +1,34 @@
 import { v7 as uuidv7 } from 'uuid';
 import { problem } from '#contract/problem.ts';
-import { signInResponse } from '#contract/sign-in.ts';
+import { type SignInResponse, signInResponse } from '#contract/sign-in.ts';
 import { readInstalls } from './installs.ts';
 import { findKey } from './outbox-keys.ts';
 import { Outbox } from './outbox.ts';
-import { saveSignIn } from './station.ts';
+import { SignInError, type Station, saveSignIn } from './station.ts';
+
+export type SignInResult = { ok: true; station: Station } | { ok: false; problem: string };
 
 interface Deps {
   post: typeof fetch;
   storage: Storage;
   randomId: () => string;
+  now: () => Date;
+  /** Asks the browser not to clear what lies on this device. */
+  persist: () => Promise<unknown>;
 }
-const here = (): Deps => ({ post: (input, init) => fetch(input, init), storage: localStorage, randomId: uuidv7 });
+const here = (): Deps => ({
+  post: (input, init) => fetch(input, init),
+  storage: localStorage,
+  randomId: uuidv7,
+  now: () => new Date(),
+  persist: async () => navigator.storage?.persist?.(),
+});
 
 /** Signs in and keeps what opens the station again without a network; else a sentence that says what to do. */
 export async function requestSignIn(
   credentials: { email: string; password: string },
   deps: Deps = here(),
-): Promise<{ ok: true } | { ok: false; problem: string }> {
+): Promise<SignInResult> {
   const body = {
     ...credentials,
     installIds: await wholeInstalls(deps.storage),
@@ -34,16 +45,28 @@ export async function requestSignIn(
   const answer: unknown = await response.json().catch(() => undefined);
   const signedIn = signInResponse.safeParse(answer);
   if (response.ok && signedIn.success) {
-    await saveSignIn(signedIn.data);
-    // Asked for once a station is set up, so that the browser does not clear its logs.
-    await navigator.storage?.persist?.();
-    return { ok: true };
+    return keepStation(signedIn.data, deps);
   }
   const refused = problem.safeParse(answer);
   return {
     ok: false,
     problem: refused.success ? refused.data.detail : 'The server did not answer properly. Try again.',
   };
+}
+
+async function keepStation(response: SignInResponse, deps: Deps): Promise<SignInResult> {
+  try {
+    const station = await saveSignIn(response, deps);
+    // A browser that declines changes nothing about the sign-in.
+    await deps.persist().catch(() => undefined);
+    return { ok: true, station };
+  } catch (error) {
+    const why =
+      error instanceof SignInError
+        ? error.message
+        : 'This browser keeps nothing on the device. Leave private mode or free some space.';
+    return { ok: false, problem: why };
+  }
 }
 
 /** Installs whose outbox is still there; one that was cleared by the browser must not count its codes anew. */

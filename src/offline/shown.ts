@@ -25,6 +25,10 @@ export function readFormulas(station: Station): Promise<Row<'formulas'>[]> {
   return station.cache.rows('formulas').toArray();
 }
 
+export function readFormula(station: Station, id: string): Promise<Row<'formulas'> | undefined> {
+  return station.cache.rows('formulas').get(id);
+}
+
 export function readRows<T extends TableName>(station: Station, table: T): Promise<Row<T>[]> {
   return station.cache.rows(table).toArray();
 }
@@ -42,7 +46,9 @@ export async function readQueue(station: Station, now: Date = new Date()): Promi
   return {
     waiting: all.filter((entry) => entry.status === 'waiting'),
     rejected: all.filter((entry) => entry.status === 'rejected'),
-    sentToday: all.filter((entry) => entry.sentAt !== null && new Date(entry.sentAt).toDateString() === today),
+    sentToday: all.filter(
+      ({ status, sentAt }) => status === 'sent' && sentAt !== null && new Date(sentAt).toDateString() === today,
+    ),
   };
 }
 

@@ -1,8 +1,9 @@
 import type { Role } from '#contract/roles.ts';
 import type { SignInResponse } from '#contract/sign-in.ts';
 import { Cache } from './cache.ts';
+import { hasLapsed } from './grant-age.ts';
 import { enterInstall, leaveInstall, readInstalls } from './installs.ts';
-import { type Clock, findKey, putKey } from './outbox-keys.ts';
+import { findKey, putKey } from './outbox-keys.ts';
 import { Outbox } from './outbox.ts';
 import { verifyGrant } from './verify-grant.ts';
 
@@ -13,7 +14,8 @@ export interface Station {
   installId: string;
   codePrefix: string;
   person: { id: string; displayName: string; role: Role };
-  grant: { id: string; lapsed: boolean };
+  /** `expiresAt` in ms since 1970; `lapsed` as it was when the station was opened. */
+  grant: { id: string; expiresAt: number; lapsed: boolean };
   cache: Cache;
   outbox: Outbox;
 }
@@ -29,6 +31,16 @@ export async function openStation(browser: Browser = here()): Promise<Station | 
   const { current } = readInstalls(browser.storage);
   if (current === null) return undefined;
   const outbox = new Outbox(current.shopId, current.installId);
+  const opened = await openWith(outbox, current, browser.now());
+  if (opened === undefined) outbox.close();
+  return opened;
+}
+
+async function openWith(
+  outbox: Outbox,
+  { shopId, installId }: { shopId: string; installId: string },
+  now: Date,
+): Promise<Station | undefined> {
   const [grant, keys, shop, station, codePrefix, clock] = await outbox.transaction('r', outbox.keys, async () =>
     Promise.all([
       findKey(outbox, 'grant'),
@@ -42,33 +54,31 @@ export async function openStation(browser: Browser = here()): Promise<Station | 
   if (!grant || !keys || !shop || !station || !codePrefix) return undefined;
   const claims = await verifyGrant(grant, keys);
   if (claims === undefined || claims.shop !== shop.id || claims.station !== station.id) return undefined;
+  const expiresAt = claims.exp * 1000;
   return {
     shop,
     station,
-    installId: current.installId,
+    installId,
     codePrefix,
     person: { id: claims.sub, displayName: claims.name, role: claims.role },
-    grant: { id: claims.jti, lapsed: hasLapsed(claims.exp, clock, browser.now()) },
-    cache: new Cache(current.shopId, current.installId),
+    grant: { id: claims.jti, expiresAt, lapsed: hasLapsed(expiresAt, clock, now) },
+    cache: new Cache(shopId, installId),
     outbox,
   };
 }
 
-/** By the corrected clock; a clock that stands before the last contact counts as lapsed. */
-function hasLapsed(expiresAt: number, clock: Clock | undefined, now: Date): boolean {
-  const corrected = now.getTime() + (clock?.offsetMs ?? 0);
-  const contact = clock?.lastContact === null || clock === undefined ? 0 : new Date(clock.lastContact).getTime();
-  return corrected >= expiresAt * 1000 || corrected < contact - 120_000;
+/** An answer whose own grant does not verify; nothing can be opened with it. */
+export class SignInError extends Error {
+  override name = 'SignInError';
 }
 
-/** Keeps what a sign-in or a renewal answered, in the databases of that shop and install. */
-export async function saveSignIn(response: SignInResponse, browser: Browser = here()): Promise<void> {
+/** Keeps what a sign-in or a renewal answered, in the databases of that shop and install. @throws SignInError */
+export async function saveSignIn(response: SignInResponse, browser: Browser = here()): Promise<Station> {
   const { shop, install } = response;
   const outbox = new Outbox(shop.id, install.id);
   await outbox.transaction('rw', outbox.keys, async () => {
-    const known = (await findKey(outbox, 'deviceSeq')) ?? 0;
+    await keepCounters(outbox, install.lastSeq);
     const offsetMs = new Date(response.serverTime).getTime() - browser.now().getTime();
-    await putKey(outbox, 'deviceSeq', Math.max(known, install.lastSeq));
     await putKey(outbox, 'codePrefix', install.codePrefix);
     await putKey(outbox, 'grant', response.grant);
     await putKey(outbox, 'publicKeys', response.keys);
@@ -76,15 +86,25 @@ export async function saveSignIn(response: SignInResponse, browser: Browser = he
     await putKey(outbox, 'station', { id: response.station.id, name: response.station.name });
     await putKey(outbox, 'clock', { offsetMs, uncertaintyMs: 2000, lastContact: response.serverTime });
   });
-  outbox.close();
+  const station = await openWith(outbox, { shopId: shop.id, installId: install.id }, browser.now());
+  if (station === undefined)
+    throw new SignInError('The server signed with a key that it does not publish. Show this to a manager.');
   enterInstall(browser.storage, shop.id, install.id);
+  return station;
+}
+
+/** A server that remembers more than this outbox has seen it lose entries: neither numbers nor codes are given again. */
+async function keepCounters(outbox: Outbox, lastSeq: number): Promise<void> {
+  if (lastSeq <= ((await findKey(outbox, 'deviceSeq')) ?? 0)) return;
+  await putKey(outbox, 'deviceSeq', lastSeq);
+  await putKey(outbox, 'tubCounter', Math.max((await findKey(outbox, 'tubCounter')) ?? 0, lastSeq));
 }
 
 /** Clears what can be pulled again and the way in; what was recorded here stays. */
 export async function signOut(station: Station, browser: Browser = here(), post: typeof fetch = fetch): Promise<void> {
+  leaveInstall(browser.storage);
   await station.outbox.keys.delete('grant');
   await station.cache.delete();
-  leaveInstall(browser.storage);
   // Without a network the session ends by itself on the server.
   await post('/api/auth/sign-out', { method: 'POST' }).catch(() => undefined);
 }

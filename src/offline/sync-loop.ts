@@ -1,6 +1,7 @@
 import { v7 as uuidv7 } from 'uuid';
 import { isLoaded } from './shown.ts';
 import type { Station } from './station.ts';
+import { type Surroundings, syncLock, thisBrowser } from './surroundings.ts';
 import { syncOnce } from './sync-once.ts';
 import type { SyncDeps, SyncResult } from './sync-result.ts';
 import { type SyncState, Watched } from './sync-state.ts';
@@ -13,69 +14,90 @@ export interface SyncHandle {
 
 const EVERY_MS = 30_000;
 const JITTER_MS = 5_000;
+/** A stalled exchange is given up, or it would hold the lock until the page closes. */
+const STALLED_MS = 60_000;
 
-const here: SyncDeps = { fetch: (input, init) => fetch(input, init), now: () => new Date(), randomId: uuidv7 };
+const here: SyncDeps = {
+  fetch: (input, init) => fetch(input, { ...init, signal: AbortSignal.timeout(STALLED_MS) }),
+  now: () => new Date(),
+  randomId: uuidv7,
+};
 
 /** Timing only: at start, online, visible, each half minute, after each entry, and by the button; one run at a time. */
-export function startSync(station: Station, deps: SyncDeps = here): SyncHandle {
+export function startSync(station: Station, deps: SyncDeps = here, around: Surroundings = thisBrowser): SyncHandle {
   const state = new Watched<SyncState>({ phase: 'idle', loaded: null, lastSent: null, nextTry: null });
-  let timer: ReturnType<typeof setTimeout> | undefined;
+  let cancelTimer = () => {};
   let stopped = false;
+  let running: Promise<void> | undefined;
+  let askedAgain = false;
+  let holdUntil = 0;
 
-  const run = async () => {
-    if (stopped) return;
-    clearTimeout(timer);
-    const result = await underLock(station, () => runOnce(station, deps, state));
-    if (stopped) return;
-    const wait = waitAfter(result);
-    timer = setTimeout(() => void run(), wait);
-    if (result !== undefined) state.set(describe(state.getSnapshot(), result, deps.now(), wait));
+  const runUntilQuiet = async () => {
+    do {
+      askedAgain = false;
+      cancelTimer();
+      const result = await around.alone(syncLock(station.installId), () => runOnce(station, deps, around, state));
+      if (stopped) break;
+      const wait = waitAfter(result, around);
+      holdUntil = result?.kind === 'failed' ? deps.now().getTime() + (result.retryAfterMs ?? 0) : 0;
+      cancelTimer = around.after(wait, wake);
+      if (result !== undefined) state.set(describe(state.getSnapshot(), result, deps.now(), wait));
+    } while (askedAgain && deps.now().getTime() >= holdUntil);
+    running = undefined;
   };
-  const visible = () => {
-    if (document.visibilityState === 'visible') void run();
+  const sendNow = (): Promise<void> => {
+    if (stopped) return Promise.resolve();
+    if (running !== undefined) askedAgain = true;
+    return (running ??= runUntilQuiet());
   };
-  const recorded = () => void run();
-  window.addEventListener('online', recorded);
-  document.addEventListener('visibilitychange', visible);
-  station.outbox.ops.hook('creating', function () {
-    this.onsuccess = () => setTimeout(recorded, 0);
-  });
-  void run();
+  const wake = () => {
+    if (deps.now().getTime() >= holdUntil) void sendNow();
+  };
+  const recorded = function (this: { onsuccess?: unknown }) {
+    this.onsuccess = () => setTimeout(wake, 0);
+  };
+  const sleep = around.onWake(wake);
+  station.outbox.ops.hook('creating', recorded);
+  void sendNow();
   return {
     state,
-    sendNow: run,
+    sendNow,
     stop: () => {
       stopped = true;
-      clearTimeout(timer);
-      window.removeEventListener('online', recorded);
-      document.removeEventListener('visibilitychange', visible);
+      cancelTimer();
+      sleep();
+      station.outbox.ops.hook('creating').unsubscribe(recorded);
     },
   };
 }
 
-/** Undefined when another tab of this install is at it. */
-async function underLock(station: Station, run: () => Promise<SyncResult>): Promise<SyncResult | undefined> {
-  return await navigator.locks.request(`halfpail-sync-${station.installId}`, { ifAvailable: true }, async (lock) =>
-    lock === null ? undefined : await run(),
-  );
+/** Never throws: whatever goes wrong on this device is told and tried again. */
+async function runOnce(
+  station: Station,
+  deps: SyncDeps,
+  around: Surroundings,
+  state: Watched<SyncState>,
+): Promise<SyncResult> {
+  if (!around.isOnline()) return { kind: 'offline' };
+  try {
+    const loaded = await isLoaded(station);
+    state.set({ ...state.getSnapshot(), phase: loaded ? 'sending' : 'loading' });
+    return await syncOnce(station, deps, (progress) => state.set({ ...state.getSnapshot(), loaded: progress }));
+  } catch (error) {
+    const why = error instanceof Error ? error.message : String(error);
+    return { kind: 'failed', problem: `This device could not keep what came: ${why}`, retryAfterMs: null };
+  }
 }
 
-async function runOnce(station: Station, deps: SyncDeps, state: Watched<SyncState>): Promise<SyncResult> {
-  if (!navigator.onLine) return { kind: 'offline' };
-  const loaded = await isLoaded(station);
-  state.set({ ...state.getSnapshot(), phase: loaded ? 'sending' : 'loading' });
-  return syncOnce(station, deps, (progress) => state.set({ ...state.getSnapshot(), loaded: progress }));
-}
-
-function waitAfter(result: SyncResult | undefined): number {
-  const jitter = Math.random() * JITTER_MS;
-  return ((result?.kind === 'failed' && result.retryAfterMs) || EVERY_MS) + jitter;
+function waitAfter(result: SyncResult | undefined, around: Surroundings): number {
+  const asked = result?.kind === 'failed' ? result.retryAfterMs : null;
+  return (asked ?? EVERY_MS) + around.jitter() * JITTER_MS;
 }
 
 function describe(before: SyncState, result: SyncResult, now: Date, waitMs: number): SyncState {
   const nextTry = new Date(now.getTime() + waitMs).toISOString();
   const { problem: _, ...kept } = before;
   if (result.kind === 'done') return { ...kept, phase: 'idle', lastSent: now.toISOString(), nextTry };
-  if (result.kind === 'failed') return { ...kept, phase: 'failed', problem: result.problem, nextTry };
+  if ('problem' in result) return { ...kept, phase: 'failed', problem: result.problem, nextTry };
   return { ...kept, phase: result.kind, nextTry };
 }

@@ -1,9 +1,15 @@
+import { problem } from '#contract/problem.ts';
+
 /** How one exchange with the server ended. */
 export type SyncResult =
   | { kind: 'done' }
   | { kind: 'offline' }
   /** 401: nobody is signed in on the server's side. */
   | { kind: 'signed-out' }
+  /** 403: this device may not send or fetch; the queue is kept. */
+  | { kind: 'refused'; problem: string }
+  /** The server named operations that it takes later; fetching goes on. */
+  | { kind: 'held'; problem: string }
   | { kind: 'failed'; problem: string; retryAfterMs: number | null };
 
 export interface SyncDeps {
@@ -12,19 +18,35 @@ export interface SyncDeps {
   randomId: () => string;
 }
 
-/** What a status other than 200 means; null when the answer may be read. */
-export function refusalOf(response: Response): SyncResult | null {
+/** What an answer other than 200 with JSON means; null when it may be read. */
+export async function refusalOf(response: Response, now: Date): Promise<SyncResult | null> {
+  const isJson = /^application\/json\b/.test(response.headers.get('content-type') ?? '');
+  if (response.status === 200 && isJson) return null;
   if (response.status === 401) return { kind: 'signed-out' };
-  if (response.ok && /^application\/json\b/.test(response.headers.get('content-type') ?? '')) return null;
-  if (response.ok)
-    return { kind: 'failed', problem: 'This network asks for something first. Open a web page.', retryAfterMs: null };
-  const seconds = Number(response.headers.get('retry-after'));
-  return {
-    kind: 'failed',
-    problem:
-      response.status === 403
-        ? 'This device may not send any more. Ask a manager.'
-        : 'The server is busy. It tries again.',
-    retryAfterMs: Number.isFinite(seconds) && seconds > 0 ? seconds * 1000 : null,
-  };
+  if (response.status === 403)
+    return {
+      kind: 'refused',
+      problem: (await detailOf(response)) ?? 'This device may not send any more. Ask a manager.',
+    };
+  return { kind: 'failed', problem: await whyFailed(response), retryAfterMs: retryAfter(response, now) };
+}
+
+async function whyFailed(response: Response): Promise<string> {
+  if (response.ok) return 'This network asks for something first. Open a web page.';
+  if (response.status === 429 || response.status >= 500) return 'The server is busy. It tries again.';
+  return (await detailOf(response)) ?? `The server answered ${response.status}. It tries again.`;
+}
+
+/** The server's own sentence; a page of somebody else has none. */
+async function detailOf(response: Response): Promise<string | undefined> {
+  const parsed = problem.safeParse(await response.json().catch(() => undefined));
+  return parsed.success ? parsed.data.detail : undefined;
+}
+
+/** Seconds or a date, RFC 9110 section 10.2.3. */
+function retryAfter(response: Response, now: Date): number | null {
+  const text = response.headers.get('retry-after');
+  if (text === null) return null;
+  const ms = /^\d+$/.test(text) ? Number(text) * 1000 : new Date(text).getTime() - now.getTime();
+  return ms > 0 ? ms : null;
 }

@@ -5,5 +5,12 @@ export function touchedBuckets(operation: OperationBody): string[] {
   if (operation.type === 'batch-mixed') {
     return operation.body.additions.flatMap((addition) => (addition.kind === 'bucket' ? [addition.bucketId] : []));
   }
-  return operation.type === 'batch-released' ? [] : [operation.body.bucketId];
+  if (operation.type === 'batch-released' || operation.type === 'bucket-adopted') return [];
+  return [operation.body.bucketId];
+}
+
+/** The buckets that begin with an operation. */
+export function bornBuckets(operation: OperationBody): string[] {
+  if (operation.type === 'batch-mixed') return operation.body.filled.map((tub) => tub.bucketId);
+  return operation.type === 'bucket-adopted' ? [operation.body.bucketId] : [];
 }

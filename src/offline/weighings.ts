@@ -15,3 +15,7 @@ export async function listWeighings(station: Station): Promise<Weighing[]> {
   const open = await station.outbox.weighings.toArray();
   return open.sort((a, b) => b.updatedAt.localeCompare(a.updatedAt));
 }
+
+export async function removeWeighing(station: Station, id: string): Promise<void> {
+  await station.outbox.weighings.delete(id);
+}

@@ -1,7 +1,10 @@
 import { type FoldInPlan, type FoldInProblem, verifyPlan } from '#domain/fold-in.ts';
 import type { FromWorker, ToWorker } from './fold-in-messages.ts';
 
-let worker: Worker | undefined;
+/** What the client uses of a Worker. */
+export type Solver = Pick<Worker, 'postMessage' | 'addEventListener' | 'removeEventListener'>;
+
+let worker: Solver | undefined;
 let lastId = 0;
 
 /** A worker answered with a plan that does not hold in exact arithmetic; it is never shown. */
@@ -16,18 +19,35 @@ export function solveFoldIn(
   signal?: AbortSignal,
 ): Promise<FoldInPlan> {
   worker ??= new Worker(new URL('./solve-fold-in.ts', import.meta.url), { type: 'module' });
-  const solver = worker;
+  return askSolver(worker, problem, onProgress, signal);
+}
+
+/** One question to a solver; it ends with a verified plan, a refusal, a broken worker or the caller's cancel. */
+export function askSolver(
+  solver: Solver,
+  problem: FoldInProblem,
+  onProgress?: (plan: FoldInPlan) => void,
+  signal?: AbortSignal,
+): Promise<FoldInPlan> {
   const id = ++lastId;
   const send = (message: ToWorker) => solver.postMessage(message);
   return new Promise((resolve, reject) => {
+    if (signal?.aborted) return reject(new Error('Cancelled.'));
     const end = () => {
       solver.removeEventListener('message', listen);
+      solver.removeEventListener('error', broken);
       signal?.removeEventListener('abort', abort);
     };
     const abort = () => {
-      send({ cancel: id });
       end();
+      send({ cancel: id });
       reject(new Error('Cancelled.'));
+    };
+    const broken = () => {
+      end();
+      // A worker that could not start is made anew with the next question.
+      if (solver === worker) worker = undefined;
+      reject(new Error('The search could not start. Try again.'));
     };
     const listen = (event: MessageEvent<FromWorker>) => {
       const message = event.data;
@@ -39,9 +59,9 @@ export function solveFoldIn(
       if (verdict.ok) resolve(message.plan);
       else reject(new UnverifiedPlanError(verdict.reasons.join(' ')));
     };
-    if (signal?.aborted) return abort();
     signal?.addEventListener('abort', abort);
     solver.addEventListener('message', listen);
+    solver.addEventListener('error', broken);
     send({ id, problem });
   });
 }
