@@ -11,12 +11,15 @@ export interface Ended {
 }
 
 interface Circumstances {
-  /** Only these variables and PATH are set. */
+  /** Only these variables, PATH, HOME and PORT are set. */
   env: Record<string, string>;
   /** Runs as user nobody, when the test itself may change users. */
   asNobody?: boolean;
   folder?: string;
 }
+
+/** Whoever has a shop open on the usual port does not disturb a test that is not about the port. */
+const unlikelyPort = String(20_000 + (process.pid % 20_000));
 
 /** Types `npm start`, without npm, and waits for its end. */
 export function runStart({ env, asNobody = false, folder = projectFolder }: Circumstances): Ended {
@@ -26,7 +29,7 @@ export function runStart({ env, asNobody = false, folder = projectFolder }: Circ
   const result = spawnSync(program ?? '', [...before, ...words], {
     cwd: folder,
     encoding: 'utf8',
-    env: { PATH: process.env['PATH'], HOME: folder, ...env },
+    env: { PATH: process.env['PATH'], HOME: folder, PORT: unlikelyPort, ...env },
     timeout: 60_000,
   });
   if (result.error) throw result.error;
