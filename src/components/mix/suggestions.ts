@@ -32,7 +32,7 @@ export async function suggestPlans(
     for (const kind of ['same-recipe', 'within-tolerance'] as const) {
       const problem = foldInProblem(facts, candidates, kind === 'same-recipe' ? new Map() : tolerance, maximumBuckets);
       const plan = await solve(problem);
-      if (plan.status !== 'none' && !suggestions.some((known) => isNoBetter(plan, known.plan))) {
+      if (plan.fromBuckets.length > 0 && !suggestions.some((known) => isNoBetter(plan, known.plan))) {
         suggestions.push({ kind, plan, problem });
       }
     }

@@ -23,7 +23,7 @@ export function UpdatePrompt() {
         disabled={asked}
         onClick={() => {
           setAsked(true);
-          void applyUpdate(station);
+          void applyUpdate(station).then((answer) => setAsked(answer === 'taken'));
         }}
       >
         Update now
