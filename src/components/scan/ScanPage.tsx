@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useEffect, useState } from 'react';
 import { StationRoot } from '#components/ui/StationRoot.tsx';
 import { SyncChip } from '#components/ui/SyncChip.tsx';
 import { Top } from '#components/ui/Top.tsx';
@@ -21,8 +21,10 @@ function Scan() {
   const shelf = useShelf();
   const [text, setText] = useState('');
   const [wrong, setWrong] = useState<Exclude<FoundTub, { tub: unknown }>>();
+  /** A code that came before the shelf was read from the disk. */
+  const [early, setEarly] = useState<string>();
   const open = (code: string) => {
-    if (shelf === undefined) return;
+    if (shelf === undefined) return setEarly(code);
     if (code.trim() === '') return setWrong({ problem: 'Type the 8 characters of the code.', near: undefined });
     const found = findTub(code, shelf);
     if (!('tub' in found)) return setWrong(found);
@@ -34,6 +36,11 @@ function Scan() {
     open(code);
   };
   useWedge(openScanned);
+  useEffect(() => {
+    if (shelf === undefined || early === undefined) return;
+    setEarly(undefined);
+    open(early);
+  });
   return (
     <>
       <Top title="Scan" back={{ href: '/', label: 'Back to the Bench' }}>
