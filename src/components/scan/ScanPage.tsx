@@ -1,9 +1,10 @@
-import { useEffect, useState } from 'react';
+import { useEffect, useMemo, useState } from 'react';
 import { StationRoot } from '#components/ui/StationRoot.tsx';
 import { SyncChip } from '#components/ui/SyncChip.tsx';
 import { Top } from '#components/ui/Top.tsx';
 import { type FoundTub, findTub } from '#components/ui/find-tub.ts';
 import { useShelf } from '#components/ui/use-shelf.ts';
+import type { Row } from '#contract/rows.ts';
 import { CameraView } from './CameraView.tsx';
 import { CodeBox } from './CodeBox.tsx';
 import { useWedge } from './use-wedge.ts';
@@ -20,27 +21,22 @@ export function ScanPage() {
 function Scan() {
   const shelf = useShelf();
   const [text, setText] = useState('');
-  const [wrong, setWrong] = useState<Exclude<FoundTub, { tub: unknown }>>();
-  /** A code that came before the shelf was read from the disk. */
-  const [early, setEarly] = useState<string>();
-  const open = (code: string) => {
-    if (shelf === undefined) return setEarly(code);
-    if (code.trim() === '') return setWrong({ problem: 'Type the 8 characters of the code.', near: undefined });
-    const found = findTub(code, shelf);
-    if (!('tub' in found)) return setWrong(found);
+  /** The code that was last asked for; answered as soon as the shelf has been read from the disk. */
+  const [asked, setAsked] = useState<string>();
+  const found = useMemo(
+    () => (asked === undefined || shelf === undefined ? undefined : answerTo(asked, shelf)),
+    [asked, shelf],
+  );
+  useEffect(() => {
+    if (found === undefined || !('tub' in found)) return;
     navigator.vibrate?.(60);
     location.assign(`/b/${found.tub.code}`);
-  };
+  }, [found]);
   const openScanned = (code: string) => {
     setText(code.slice(0, 80));
-    open(code);
+    setAsked(code);
   };
   useWedge(openScanned);
-  useEffect(() => {
-    if (shelf === undefined || early === undefined) return;
-    setEarly(undefined);
-    open(early);
-  });
   return (
     <>
       <Top title="Scan" back={{ href: '/', label: 'Back to the Bench' }}>
@@ -50,14 +46,19 @@ function Scan() {
         <CameraView onText={openScanned} />
         <CodeBox
           text={text}
-          wrong={wrong}
-          onOpen={() => open(text)}
+          wrong={found !== undefined && 'problem' in found ? found : undefined}
+          onOpen={() => setAsked(text)}
           onText={(next) => {
             setText(next);
-            setWrong(undefined);
+            setAsked(undefined);
           }}
         />
       </div>
     </>
   );
+}
+
+function answerTo(code: string, shelf: readonly Row<'buckets'>[]): FoundTub {
+  if (code.trim() === '') return { problem: 'Type the 8 characters of the code.', near: undefined };
+  return findTub(code, shelf);
 }
