@@ -62,9 +62,9 @@ test('a page with a row that does not fit is not taken, cursor included', async 
     { table: 'components', id: good.id, row: good },
     { table: 'buckets', id: uuidv7(), row: { code: 5 } },
   ];
-  await expect(
-    pullChanges(station, answering({ [PULL]: () => pullAnswer({ changes }) }).deps, ignore),
-  ).rejects.toThrow();
+  await expect(pullChanges(station, answering({ [PULL]: () => pullAnswer({ changes }) }).deps, ignore)).rejects.toThrow(
+    'code',
+  );
   expect(await readRows(station, 'components')).toEqual([]);
   expect(await station.cache.meta.get('position')).toBeUndefined();
 });

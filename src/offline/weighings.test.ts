@@ -51,6 +51,6 @@ test('a removed weighing is gone, the other stays', async () => {
 test('a weighing that does not fit its shape is not saved', async () => {
   const station = await makeStation();
   const wrong = { ...weighingAt('2026-11-30T08:05:00Z'), batchMg: 0 as Milligrams };
-  await expect(saveWeighing(station, wrong)).rejects.toThrow();
+  await expect(saveWeighing(station, wrong)).rejects.toThrow('batchMg');
   expect(await listWeighings(station)).toEqual([]);
 });

@@ -1,0 +1,78 @@
+import { v7 as uuidv7 } from 'uuid';
+import { expect, test } from 'vitest';
+import { accepted, answering, pullAnswer, pushAnswer } from '#tests/support/fake-server.ts';
+import { relocated } from '#tests/support/operations.ts';
+import { makeBrowser, makeSignIn, makeStation } from '#tests/support/station.ts';
+import { recordOperation } from './record-operation.ts';
+import { readQueue } from './shown.ts';
+import type { Station } from './station.ts';
+import { syncOnce } from './sync-once.ts';
+
+const [PUSH, PULL, RENEW] = ['/api/sync/push', '/api/sync/pull', '/api/auth/renew'];
+const ignore = () => {};
+const denied = () => new Response('', { status: 401 });
+
+async function stationWithEntry(): Promise<Station> {
+  const station = await makeStation();
+  await recordOperation(station, relocated(uuidv7()));
+  return station;
+}
+
+test('sends first, then fetches', async () => {
+  const server = answering({ [PUSH]: (call) => pushAnswer(call, accepted(1)), [PULL]: () => pullAnswer() });
+  expect(await syncOnce(await stationWithEntry(), server.deps, ignore)).toEqual({ kind: 'done' });
+  expect(server.calls.map(({ path }) => path)).toEqual([PUSH, PULL]);
+});
+
+test('a push that fails is not followed by a fetch', async () => {
+  const server = answering({ [PUSH]: () => new Response('', { status: 503 }), [PULL]: () => pullAnswer() });
+  expect((await syncOnce(await stationWithEntry(), server.deps, ignore)).kind).toBe('failed');
+  expect(server.calls.map(({ path }) => path)).toEqual([PUSH]);
+});
+
+test('entries that the server takes later do not keep the changes of others away', async () => {
+  const server = answering({
+    [PUSH]: (call) => pushAnswer(call, (opId) => ({ opId, outcome: 'retry' })),
+    [PULL]: () => pullAnswer(),
+  });
+  expect((await syncOnce(await stationWithEntry(), server.deps, ignore)).kind).toBe('held');
+  expect(server.calls.map(({ path }) => path)).toEqual([PUSH, PULL]);
+});
+
+test('a 401 is answered by one renewal, then all is sent under the new grant', async () => {
+  const station = await stationWithEntry();
+  const renewed = await makeSignIn({
+    shopId: station.shop.id,
+    personId: station.person.id,
+    installId: station.installId,
+  });
+  const server = answering({
+    [PUSH]: (call, n) => (n === 0 ? denied() : pushAnswer(call, accepted(1))),
+    [PULL]: () => pullAnswer(),
+    [RENEW]: () => Response.json(renewed),
+  });
+  const before = station.grant.id;
+  expect(await syncOnce(station, server.deps, ignore, makeBrowser())).toEqual({ kind: 'done' });
+  expect(server.calls.map(({ path }) => path)).toEqual([PUSH, RENEW, PUSH, PULL]);
+  expect(server.calls[1]?.query.get('install')).toBe(station.installId);
+  expect(station.grant.id).not.toBe(before);
+  expect((await readQueue(station)).waiting).toEqual([]);
+});
+
+test.each([
+  ['is refused', denied],
+  ['meets a portal', () => new Response('<h1>Hotel</h1>', { headers: { 'content-type': 'text/html' } })],
+])('a renewal that %s leaves everybody signed out and the queue whole', async (_, renewal) => {
+  const station = await stationWithEntry();
+  const server = answering({ [PUSH]: denied, [RENEW]: renewal });
+  expect(await syncOnce(station, server.deps, ignore, makeBrowser())).toEqual({ kind: 'signed-out' });
+  expect(server.calls.map(({ path }) => path)).toEqual([PUSH, RENEW]);
+  expect((await readQueue(station)).waiting).toHaveLength(1);
+});
+
+test('a renewal for another install is not taken', async () => {
+  const station = await stationWithEntry();
+  const foreign = await makeSignIn();
+  const server = answering({ [PUSH]: denied, [RENEW]: () => Response.json(foreign) });
+  expect(await syncOnce(station, server.deps, ignore, makeBrowser())).toEqual({ kind: 'signed-out' });
+});
