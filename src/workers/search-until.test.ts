@@ -1,76 +1,71 @@
-import { describe, expect, test } from 'vitest';
-import { type Composition, compositionFromMasses } from '#domain/composition.ts';
-import { type FoldInPlan, type FoldInProblem, foldInBuckets, verifyPlan } from '#domain/fold-in.ts';
-import type { Milligrams, PartsPerBillion } from '#domain/mass.ts';
+import { expect, test } from 'vitest';
+import type { FoldInPlan } from '#domain/fold-in.ts';
+import type { Milligrams } from '#domain/mass.ts';
 import { searchUntil } from './search-until.ts';
 
-const mg = (grams: number) => Math.round(grams * 1000) as Milligrams;
-const of = (parts: Record<string, number>): Composition =>
-  compositionFromMasses(
-    Object.entries(parts).map(([componentId, mass]) => ({ componentId, mass: mass as Milligrams })),
-  );
+const mg = (grams: number) => (grams * 1000) as Milligrams;
 
-/** Many tubs that nearly fit, so that the search has to branch for long. */
-function hardProblem(): FoldInProblem {
-  const buckets = Array.from({ length: 40 }, (_, n) => ({
-    id: `tub-${n}`,
-    usable: mg(180 + ((n * 37) % 110)),
-    composition: of({
-      base: 60 + ((n * 7) % 20),
-      white: 12 + ((n * 11) % 17),
-      blue: 5 + ((n * 5) % 13),
-      red: 1 + (n % 6),
-    }),
-  }));
-  const tolerance = new Map(['base', 'white', 'blue', 'red'].map((id) => [id, 8_000_000 as PartsPerBillion]));
+function planOf(reused: number, status: FoldInPlan['status'], bound = 500): FoldInPlan {
+  const [mass, objectiveBound] = [mg(reused), mg(bound)];
   return {
-    target: of({ base: 68, white: 20, blue: 9, red: 3 }),
-    batch: { minimum: mg(1500), maximum: mg(1500) },
-    buckets,
-    tolerance,
-    readability: mg(0.1),
-    minimumFromBucket: mg(20),
-    minimumFresh: mg(0),
-    sliver: mg(20),
-    maximumBuckets: 6,
-    worthOpening: mg(30),
+    status,
+    batch: mg(600),
+    reused: mass,
+    objective: mass,
+    objectiveBound,
+    fromBuckets: reused === 0 ? [] : [{ bucketId: 'sky', mass, empties: true }],
+    fresh: new Map([['base', (mg(600) - mass) as Milligrams]]),
+    excluded: [],
   };
 }
 
+/** A search that finds these one after another, then ends with the last. */
+function* finding(...plans: FoldInPlan[]) {
+  for (const plan of plans) yield { plan, bound: plan.objectiveBound };
+  return plans.at(-1) as FoldInPlan;
+}
+
 /** A clock that moves a step each time it is read. */
-function clockOf(stepMs: number, deadlineMs: number) {
+function clockOf(stepMs: number) {
   let time = 0;
-  return { elapsed: () => (time += stepMs), deadlineMs, pause: async () => {} };
+  return { elapsed: () => (time += stepMs), deadlineMs: 1500, pause: async () => {} };
 }
 
 const never = () => false;
 const ignore = () => {};
+const [first, second, last] = [planOf(0, 'none'), planOf(100, 'gap'), planOf(200, 'best', 200)];
 
-describe('a search with a deadline', () => {
-  test('gives the whole search’s plan when it has the time', async () => {
-    const problem = { ...hardProblem(), buckets: hardProblem().buckets.slice(0, 4) };
-    expect(await searchUntil(problem, clockOf(0, 1500), never, ignore)).toEqual(foldInBuckets(problem));
-  });
+test('a search with time enough runs to its end, and tells its progress on the way', async () => {
+  const told: FoldInPlan[] = [];
+  const plan = await searchUntil(finding(first, second, last), clockOf(0), never, (found) => told.push(found.plan));
+  expect(plan).toEqual(last);
+  expect(told).toEqual([first, second, last]);
+});
 
-  test('stopped at its deadline gives the best so far, verified, with a bound and no claim beyond it', async () => {
-    const problem = hardProblem();
-    const plan = (await searchUntil(problem, clockOf(1000, 1500), never, ignore)) as FoldInPlan;
-    expect(verifyPlan(problem, plan)).toEqual({ ok: true });
-    expect(plan.status).toBe('gap');
-    expect(plan.objectiveBound).toBeGreaterThan(plan.objective);
-  });
+test('a search stopped at its deadline gives the best so far, with its bound', async () => {
+  expect(await searchUntil(finding(first, second, last), clockOf(800), never, ignore)).toEqual(second);
+});
 
-  test('tells its progress until it stops', async () => {
-    const bounds: number[] = [];
-    await searchUntil(hardProblem(), clockOf(1000, 4500), never, ({ bound }) => bounds.push(bound));
-    expect(bounds.length).toBeGreaterThan(0);
-    expect([...bounds].sort((a, b) => b - a)).toEqual(bounds);
-  });
+test('a stopped search that has found no tub yet does not claim that none is worth it', async () => {
+  const plan = await searchUntil(finding(first, second), clockOf(2000), never, ignore);
+  expect(plan).toEqual({ ...first, status: 'gap' });
+});
 
-  test('ends without a plan when it is cancelled', async () => {
-    let pauses = 0;
-    const clock = { elapsed: () => 0, deadlineMs: 1500, pause: async () => void (pauses += 1) };
-    expect(await searchUntil(hardProblem(), clock, () => pauses === 2, ignore)).toBeUndefined();
-    expect(pauses).toBe(2);
-  });
+test('a stopped search whose plan is proven keeps its proof', async () => {
+  expect(await searchUntil(finding(last, last), clockOf(2000), never, ignore)).toEqual(last);
+});
+
+test('a cancelled search ends without a plan and is not continued', async () => {
+  let pauses = 0;
+  const clock = { elapsed: () => 0, deadlineMs: 1500, pause: async () => void (pauses += 1) };
+  expect(await searchUntil(finding(first, second, last), clock, () => pauses === 2, ignore)).toBeUndefined();
+  expect(pauses).toBe(2);
+});
+
+test('what the search throws reaches the caller', async () => {
+  function* failing(): Generator<{ plan: FoldInPlan; bound: Milligrams }, FoldInPlan> {
+    yield { plan: first, bound: first.objectiveBound };
+    throw new RangeError('The batch is off the step.');
+  }
+  await expect(searchUntil(failing(), clockOf(0), never, ignore)).rejects.toThrow('The batch is off the step.');
 });

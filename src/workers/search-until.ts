@@ -1,5 +1,10 @@
-import { type FoldInPlan, type FoldInProblem, searchFoldIn } from '#domain/fold-in.ts';
+import type { FoldInPlan } from '#domain/fold-in.ts';
 import type { Milligrams } from '#domain/mass.ts';
+
+interface Found {
+  plan: FoldInPlan;
+  bound: Milligrams;
+}
 
 export interface SearchClock {
   /** Milliseconds of a clock that never goes back. */
@@ -10,17 +15,16 @@ export interface SearchClock {
 }
 
 /**
- * The search's plan, or at the deadline the best so far with its bound; undefined when cancelled. A stopped search
- * claims nothing that its bound does not prove. @throws FoldInError
+ * The search's plan, or at the deadline the best so far with its bound; undefined when cancelled. A search that was
+ * stopped claims nothing that its bound does not prove. @throws what the search throws
  */
 export async function searchUntil(
-  problem: FoldInProblem,
+  search: Generator<Found, FoldInPlan>,
   clock: SearchClock,
   isCancelled: () => boolean,
-  onProgress: (found: { plan: FoldInPlan; bound: Milligrams }) => void,
+  onProgress: (found: Found) => void,
 ): Promise<FoldInPlan | undefined> {
   const started = clock.elapsed();
-  const search = searchFoldIn(problem);
   for (;;) {
     const step = search.next();
     if (step.done) return step.value;

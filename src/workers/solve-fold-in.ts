@@ -1,5 +1,5 @@
 /// <reference lib="webworker" />
-import type { FoldInProblem } from '#domain/fold-in.ts';
+import { type FoldInProblem, searchFoldIn } from '#domain/fold-in.ts';
 import type { FromWorker, ToWorker } from './fold-in-messages.ts';
 import { searchUntil } from './search-until.ts';
 
@@ -22,7 +22,7 @@ async function solve(id: number, problem: FoldInProblem): Promise<void> {
   solving.add(id);
   try {
     const plan = await searchUntil(
-      problem,
+      searchFoldIn(problem),
       clock,
       () => !solving.has(id),
       (found) => answer({ id, kind: 'progress', ...found }),
