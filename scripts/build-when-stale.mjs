@@ -20,7 +20,9 @@ export async function buildWhenStale() {
     if (fs.existsSync(stampFile) && fs.readFileSync(stampFile, 'utf8') === stamp) return;
     say('Building …');
     fs.rmSync(stampFile, { force: true });
-    await runStep('The build', [packageFile('astro/astro.js'), 'build'], { env: astroEnv, quiet: true });
+    // A test runner sets NODE_ENV=test, and React would be built for development.
+    const env = { ...astroEnv, NODE_ENV: 'production' };
+    await runStep('The build', [packageFile('astro/astro.js'), 'build'], { env, quiet: true });
     await precompress(path.join(distFolder, 'client'));
     fs.writeFileSync(stampFile, stamp);
   });
