@@ -41,7 +41,8 @@ export function blend(sources: readonly { composition: Composition; mass: Millig
     for (const [componentId, share] of composition)
       addTo(amounts, componentId, BigInt(milligrams(mass)) * BigInt(share));
   }
-  return compositionFromAmounts(amounts);
+  // By id, so that a station and the server round a tie alike whatever order their sources came in.
+  return compositionFromAmounts(new Map([...amounts].sort(([a], [b]) => (a < b ? -1 : 1))));
 }
 
 /** @throws CompositionError when the shares are not whole, not positive or do not add up to the whole */
