@@ -1,70 +1,52 @@
-import { compositionFromMasses } from '#domain/composition.ts';
-import { type FoldInProblem, foldInBuckets, verifyPlan } from '#domain/fold-in.ts';
-import type { Milligrams, PartsPerBillion } from '#domain/mass.ts';
-import { type Random, seededRandom } from './seed/random.ts';
+import { type FoldInPlan, foldInBuckets, verifyPlan } from '#domain/fold-in.ts';
+import type { Milligrams } from '#domain/mass.ts';
+import { type Ask, makeShop } from './bench/fold-in-shop.ts';
 
-/** Fold-in on seeded shops: how many instances, plans proven, verified, and the spread of times in this one run. */
-const INSTANCES = 40;
-const COMPONENTS = 24;
+const SEEDS = Number(process.argv[2] ?? 20);
+const grams = (mass: number) => (mass * 1000) as Milligrams;
 
-for (const buckets of [20, 100]) {
-  for (const [kind, tau] of [
-    ['same recipe', 0],
-    ['within tolerance', 0.02],
-  ] as const) {
-    report(buckets, kind, tau);
-  }
+const asks: Ask[] = [20, 120, 500].flatMap((buckets) =>
+  [false, true].flatMap((tolerance) =>
+    [2, 6].flatMap((maximumBuckets) =>
+      [0, 100].map((worth) => ({ buckets, tolerance, maximumBuckets, worthOpening: grams(worth) })),
+    ),
+  ),
+);
+
+interface Run {
+  ms: number;
+  plan: FoldInPlan;
+  verified: boolean;
 }
 
-function report(buckets: number, kind: string, tau: number): void {
-  const random = seededRandom(buckets * 7 + Math.round(tau * 1000));
-  const times: number[] = [];
-  const counts = { best: 0, gap: 0, none: 0, verified: 0 };
-  for (let n = 0; n < INSTANCES; n++) {
-    const problem = makeProblem(random, buckets, tau);
-    const started = performance.now();
-    const plan = foldInBuckets(problem);
-    times.push(performance.now() - started);
-    counts[plan.status] += 1;
-    if (verifyPlan(problem, plan).ok) counts.verified += 1;
-  }
-  times.sort((a, b) => a - b);
-  const at = (part: number) => (times[Math.floor((times.length - 1) * part)] ?? 0).toFixed(1);
+function runOne(ask: Ask, seed: number): Run {
+  const problem = makeShop(seed, ask);
+  const started = performance.now();
+  const plan = foldInBuckets(problem);
+  return { ms: performance.now() - started, plan, verified: verifyPlan(problem, plan).ok };
+}
+
+function quantile(values: readonly number[], q: number): string {
+  const sorted = [...values].sort((a, b) => a - b);
+  return (sorted[Math.min(sorted.length - 1, Math.floor(q * sorted.length))] ?? Number.NaN).toFixed(1);
+}
+
+function report(ask: Ask, runs: readonly Run[]): void {
+  const count = (status: FoldInPlan['status']) => runs.filter((run) => run.plan.status === status).length;
+  const times = runs.map((run) => run.ms);
+  const gaps = runs.map(({ plan }) => plan.objectiveBound - plan.objective);
   console.log(
-    `${buckets} buckets, ${kind}: ${JSON.stringify(counts)} of ${INSTANCES}, ms p50 ${at(0.5)} p95 ${at(0.95)}`,
+    `N=${ask.buckets} ${ask.tolerance ? 'tolerance  ' : 'same recipe'} K=${ask.maximumBuckets} κ=${ask.worthOpening / 1000} g: ` +
+      `p50 ${quantile(times, 0.5)} ms, p95 ${quantile(times, 0.95)} ms, most ${quantile(times, 1)} ms; ` +
+      `best ${count('best')}, gap ${count('gap')} (most ${(Math.max(...gaps) / 1000).toFixed(2)} g), none ${count('none')}; ` +
+      `verified ${runs.filter((run) => run.verified).length} of ${runs.length}`,
   );
 }
 
-/** Colours of a few pigments in base and white, and leftovers that are lighter, deeper or of another colour. */
-function makeProblem(random: Random, count: number, tau: number): FoldInProblem {
-  const colours = Array.from({ length: 12 }, () =>
-    Array.from({ length: random.int(1, 4) }, () => random.int(2, COMPONENTS - 1)),
+console.log(`Fold-in, ${SEEDS} seeded shops a row, Node ${process.version}`);
+for (let warm = 0; warm < 10; warm++) runOne(asks[warm % asks.length] as Ask, 1000 + warm);
+for (const ask of asks)
+  report(
+    ask,
+    Array.from({ length: SEEDS }, (_, seed) => runOne(ask, seed + 1)),
   );
-  const mixOf = (pigments: readonly number[], depth: number) => {
-    const parts = new Map<string, number>([
-      ['c0', 700_000],
-      ['c1', 200_000],
-    ]);
-    for (const pigment of pigments) parts.set(`c${pigment}`, Math.round(30_000 * depth) + random.int(0, 200));
-    return compositionFromMasses([...parts].map(([componentId, mass]) => ({ componentId, mass: mass as Milligrams })));
-  };
-  const wanted = colours[0] as number[];
-  const target = mixOf(wanted, 1);
-  const tolerance = new Map([...target].map(([id, share]) => [id, Math.floor(share * tau) as PartsPerBillion]));
-  return {
-    target,
-    batch: { minimum: 850_000 as Milligrams, maximum: 850_000 as Milligrams },
-    buckets: Array.from({ length: count }, (_, n) => ({
-      id: `b${n}`,
-      usable: (random.int(300, 9000) * 100) as Milligrams,
-      composition: mixOf(n % 4 === 0 ? wanted : random.pick(colours), 0.2 + random.next() * 1.4),
-    })),
-    tolerance: tau === 0 ? new Map() : tolerance,
-    readability: 100 as Milligrams,
-    minimumFromBucket: 20_000 as Milligrams,
-    minimumFresh: 2000 as Milligrams,
-    sliver: 20_000 as Milligrams,
-    maximumBuckets: 2,
-    worthOpening: 100_000 as Milligrams,
-  };
-}

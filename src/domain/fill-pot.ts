@@ -26,6 +26,8 @@ export interface Pot {
   readability: Milligrams;
   /** Components that get no more: what lies in the pot of them stays as it is. */
   settled?: ReadonlySet<string>;
+  /** mg of fresh ink that a component gets at least. */
+  least?: ReadonlyMap<string, Milligrams>;
 }
 
 /**
@@ -41,11 +43,10 @@ export function fillPot(pot: Pot, batch: Milligrams): Map<string, Milligrams> | 
   if (BigInt(batch) * PPB < held) return undefined;
   const needs = exactNeeds(pot, held + steps * unit);
   if (needs === undefined) return undefined;
-  const bounded = [...needs.values()].map((need): Need => ({
-    need,
-    lower: need / unit,
-    upper: ceilDivide(need, unit),
-  }));
+  const bounded = [...needs].map(([id, need]): Need => {
+    const lower = maximum(need / unit, BigInt(pot.least?.get(id) ?? 0) / BigInt(pot.readability));
+    return { need, lower, upper: maximum(ceilDivide(need, unit), lower) };
+  });
   const found = minMaxSteps(bounded, unit, steps);
   if (found === undefined) return undefined;
   return new Map(
@@ -82,8 +83,13 @@ function partOf(pot: Pot, total: bigint, id: string, share: number): Part {
   const goal = (total * BigInt(share)) / PPB;
   const slack = (total * tolerance) / PPB;
   const held = pot.contents.get(id) ?? 0n;
-  const floor = pot.settled?.has(id) || held > goal - slack ? held : goal > slack ? goal - slack : 0n;
+  const atLeast = held + BigInt(pot.least?.get(id) ?? 0) * PPB;
+  const floor = pot.settled?.has(id) ? held : maximum(atLeast, goal > slack ? goal - slack : 0n);
   return { id, goal, held, floor, ceiling: goal + slack + BigInt(pot.readability) * PPB };
+}
+
+function maximum(a: bigint, b: bigint): bigint {
+  return a > b ? a : b;
 }
 
 /** Levels max(floor, λ·goal) that add up to `room`; a component that stands above λ·goal is fixed at its floor. */

@@ -1,108 +1,147 @@
-import { type Fixed, fixDecisions } from './fold-in-decisions.ts';
-import type { Decision, Search } from './fold-in-node.ts';
+import { type Bound, type Certificate, boundOf } from './fold-in-bound.ts';
+import type { Search } from './fold-in-candidates.ts';
+import { type Decisions, type Row, edgeRows, excessRow, reserveOf } from './fold-in-rows.ts';
+import { WHOLE } from './mass.ts';
 import { type LinearProgram, solveBounded } from './simplex.ts';
 
 export interface Relaxed {
-  /** mg taken of each candidate. */
+  certificate: Certificate;
+  bound: Bound;
+  /** mg taken of each candidate, and the batch: floating, to start rounding from. */
   taken: Float64Array;
-  /** No plan under these decisions has a greater objective (mg). */
-  bound: number;
   batch: number;
+  /** mg of each component that these bring. */
+  held: Float64Array;
+  /** Sets of components in excess that mattered. */
+  excesses: readonly (readonly boolean[])[];
+  /** How many decisions it stands under, and the size of its program. */
+  depth: number;
+  cells: number;
 }
 
-/** Floating-point sums of up to 10⁹ mg err by far less; the bound is raised by this. */
-const MARGIN = 1e-2;
+const MOST_CUTS = 12;
+/** mg of the batch by which a condition may be broken before it is added. */
+const BROKEN = 0.5;
 
-interface Row {
-  cells: Float64Array;
-  right: number;
+/** The linear relaxation under the decisions; conditions on excess are added as they are broken. */
+export function relax(search: Search, decisions: Decisions, known: Relaxed['excesses']): Relaxed {
+  const edges = edgeRows(search, decisions);
+  const tolerant = search.components.some((_, j) => search.lower[j] !== search.upper[j]);
+  const excesses = [...known];
+  const columns = columnsOf(search, decisions);
+  for (let cuts = 0; ; cuts++) {
+    const rows = [...edges, ...excesses.map((excess) => excessRow(search, decisions, excess))];
+    const found = optimise(search, decisions, rows, columns);
+    const excess = tolerant && cuts < MOST_CUTS ? brokenExcess(search, decisions, found) : undefined;
+    if (excess === undefined || excesses.some((other) => other.every((over, j) => over === excess[j]))) {
+      const certificate = { decisions, rows, multipliers: found.multipliers };
+      const mattered = excesses.filter((_, n) => (found.multipliers[edges.length + n] as number) > 0);
+      const depth = countDecided(decisions);
+      const cells = rows.length * columns.length * (cuts + 1);
+      return { ...found, certificate, bound: boundOf(search, certificate), excesses: mattered, depth, cells };
+    }
+    excesses.push(excess);
+  }
 }
 
-/**
- * The linear relaxation under the decisions, and a bound by weak duality from its multipliers: for any π ≥ 0 no
- * solution exceeds π·b + Σ u·max(0, c − π·A). Columns: open candidates, the batch above its least, the surplus of each
- * component over the lower edge of its tolerance. Undefined when the decisions already break a limit.
- * @param reserve mg of each component that must be left to be added fresh
- */
-export function relax(search: Search, decisions: readonly Decision[], reserve: Float64Array): Relaxed | undefined {
-  const fixed = fixDecisions(search, decisions);
-  const program = fixed && buildProgram(search, fixed, reserve);
-  if (fixed === undefined || program === undefined) return undefined;
-  const optimum = solveBounded(program);
-  const taken = Float64Array.from(fixed.taken);
-  fixed.columns.forEach((column, n) => {
-    taken[column.candidate] = (taken[column.candidate] as number) + (optimum.x[n] as number);
+function countDecided({ buckets, fresh }: Decisions): number {
+  return (
+    buckets.reduce((sum, decision) => sum + Number(decision === 'emptied' || decision === 'partial'), 0) +
+    fresh.reduce((sum, decision) => sum + Number(decision !== 'free'), 0)
+  );
+}
+
+interface Column {
+  candidate: number;
+  gain: number;
+  from: number;
+  upper: number;
+  /** Of one bucket count for each mg. */
+  uses: number;
+}
+
+function columnsOf(search: Search, { buckets }: Decisions): Column[] {
+  const worth = search.problem.worthOpening;
+  return search.candidates.flatMap(({ usable, most, canEmpty }, n): Column[] => {
+    const decision = buckets[n];
+    if (decision === 'closed') return [];
+    if (decision === 'emptied') return [{ candidate: n, gain: 0, from: usable, upper: 0, uses: 0 }];
+    const from = search.minimum;
+    if (decision === 'partial') return [{ candidate: n, gain: 1, from, upper: most - from, uses: 0 }];
+    const upper = canEmpty ? usable : most;
+    return [{ candidate: n, gain: 1 - worth / upper, from: 0, upper, uses: 1 / upper }];
   });
-  const ranged = search.greatest > search.least;
-  const bound = weakDuality(program, optimum.duals) + fixed.value - (ranged ? search.least : 0);
-  const batch = search.least + (ranged ? (optimum.x[fixed.columns.length] as number) : 0);
-  return { taken, bound: bound + Math.abs(bound) * 1e-11 + MARGIN, batch };
 }
 
-function buildProgram(search: Search, fixed: Fixed, reserve: Float64Array): LinearProgram | undefined {
-  const { target, tolerance, least } = search;
-  const open = fixed.columns.length;
-  const surplusAt = open + 1;
-  const tolerant = tolerance.some((tau) => tau > 0);
-  const width = surplusAt + (tolerant ? target.length : 0);
-  const rows: Row[] = [];
-  const addRow = (right: number, fill: (cells: Float64Array) => void) => {
-    const cells = new Float64Array(width);
-    fill(cells);
-    rows.push({ cells, right });
+type Optimum = Pick<Relaxed, 'taken' | 'batch' | 'held'> & { multipliers: number[] };
+
+function optimise(search: Search, decisions: Decisions, rows: readonly Row[], columns: readonly Column[]): Optimum {
+  const scales = rows.map((row) => (row.ppb === 0 ? 1 : WHOLE / Math.abs(row.ppb)));
+  const { x, duals } = solveBounded(programOf(search, decisions, rows, scales, columns));
+  const taken = new Float64Array(search.candidates.length);
+  const held = new Float64Array(search.components.length);
+  columns.forEach(({ candidate, from }, n) => {
+    const mass = from + (x[n] as number);
+    taken[candidate] = mass;
+    addShares(search, candidate, mass, held);
+  });
+  const multipliers = scales.map((scale, n) => (duals[n] as number) * scale);
+  return { taken, held, batch: search.least + (x[columns.length] ?? 0), multipliers };
+}
+
+/** Columns: what is taken of each candidate beyond its `from`, then the batch beyond its least. Last row: the count. */
+function programOf(
+  search: Search,
+  decisions: Decisions,
+  rows: readonly Row[],
+  scales: readonly number[],
+  columns: readonly Column[],
+): LinearProgram {
+  const width = columns.length + 1;
+  const matrix = new Float64Array((rows.length + 1) * width);
+  const right = new Float64Array(rows.length + 1);
+  rows.forEach((row, i) => {
+    const scale = scales[i] as number;
+    let rest = (search.least * row.ppb) / WHOLE - row.reserve;
+    columns.forEach(({ candidate, from }, n) => {
+      const cell = cellOf(search, row, candidate);
+      rest -= cell * from;
+      matrix[i * width + n] = cell * scale;
+    });
+    matrix[i * width + columns.length] = (-row.ppb / WHOLE) * scale;
+    right[i] = Math.abs(rest * scale) < 1e-6 ? 0 : rest * scale;
+  });
+  columns.forEach(({ uses }, n) => (matrix[rows.length * width + n] = uses));
+  const opened = decisions.buckets.filter((decision) => decision === 'emptied' || decision === 'partial').length;
+  right[rows.length] = Math.max(0, search.problem.maximumBuckets - opened);
+  const range = search.greatest - search.least;
+  return {
+    objective: Float64Array.from([...columns.map(({ gain }) => gain), range > 0 ? -1 : 0]),
+    upper: Float64Array.from([...columns.map(({ upper }) => upper), range]),
+    matrix,
+    right,
   };
-  let room = 1;
-  let borrowed = 0;
-  for (let j = 0; j < target.length; j++) {
-    const most = (target[j] as number) + (tolerance[j] as number);
-    const edge = Math.max(0, (target[j] as number) - (tolerance[j] as number));
-    const held = fixed.contents[j] as number;
-    const shares = (cells: Float64Array) =>
-      fixed.columns.forEach((column, n) => (cells[n] = column.shares[j] as number));
-    addRow(least * most - held - (reserve[j] as number), (cells) => {
-      shares(cells);
-      cells[open] = -most;
-    });
-    if (!tolerant) continue;
-    room -= edge;
-    borrowed += Math.max(0, held - least * edge);
-    addRow(Math.max(0, least * edge - held), (cells) => {
-      shares(cells);
-      cells[open] = -edge;
-      cells[surplusAt + j] = -1;
-    });
-  }
-  if (tolerant) addRow(least * room - borrowed, (cells) => cells.fill(1, surplusAt).fill(-room, open, open + 1));
-  addRow(fixed.stillOpenable, (cells) => fixed.columns.forEach((column, n) => (cells[n] = column.uses)));
-  return assemble(search, fixed, rows, width);
 }
 
-/** Rows that fixed buckets have overdrawn by rounding alone count as full; a real overdraft has no solution. */
-function assemble(search: Search, fixed: Fixed, rows: readonly Row[], width: number): LinearProgram | undefined {
-  const slack = -1e-7 * search.greatest;
-  if (rows.some((row) => row.right < slack)) return undefined;
-  const objective = new Float64Array(width);
-  const upper = new Float64Array(width).fill(search.greatest);
-  fixed.columns.forEach((column, n) => {
-    objective[n] = column.gain;
-    upper[n] = column.upper;
+function cellOf(search: Search, row: Row, candidate: number): number {
+  const shares = search.candidates[candidate]?.shares ?? new Float64Array();
+  let cell = row.each;
+  for (let j = 0; j < shares.length; j++) cell += (row.weights[j] as number) * (shares[j] as number);
+  return cell;
+}
+
+function addShares(search: Search, candidate: number, mass: number, held: Float64Array): void {
+  search.candidates[candidate]?.shares.forEach((share, j) => (held[j] = (held[j] as number) + mass * share));
+}
+
+/** The components in excess, where what is over in them does not fit beside the lower edges of the others. */
+function brokenExcess(search: Search, { fresh }: Decisions, { held, batch }: Optimum): boolean[] | undefined {
+  let sum = 0;
+  const excess = search.components.map((_, j) => {
+    const edge = (batch * (search.lower[j] as number)) / WHOLE;
+    const brought = (held[j] as number) + reserveOf(search, fresh, j);
+    sum += Math.max(edge, brought);
+    return brought > edge;
   });
-  const ranged = search.greatest > search.least;
-  objective[fixed.columns.length] = ranged ? -1 : 0;
-  upper[fixed.columns.length] = search.greatest - search.least;
-  const matrix = new Float64Array(rows.length * width);
-  rows.forEach((row, i) => matrix.set(row.cells, i * width));
-  return { objective, matrix, right: Float64Array.from(rows, (row) => Math.max(0, row.right)), upper };
-}
-
-function weakDuality(program: LinearProgram, duals: Float64Array): number {
-  const width = program.objective.length;
-  let bound = 0;
-  for (let i = 0; i < duals.length; i++) bound += (duals[i] as number) * (program.right[i] as number);
-  for (let c = 0; c < width; c++) {
-    let reduced = program.objective[c] as number;
-    for (let i = 0; i < duals.length; i++) reduced -= (duals[i] as number) * (program.matrix[i * width + c] as number);
-    if (reduced > 0) bound += reduced * (program.upper[c] as number);
-  }
-  return bound;
+  return sum > batch + BROKEN ? excess : undefined;
 }

@@ -72,6 +72,19 @@ describe('fold-in', () => {
     expect([...plan.fresh.values()]).toEqual([]);
   });
 
+  test('a tub of one milligram opens nothing where no tub may be opened', () => {
+    const given = problem({
+      target,
+      batch: { minimum: mg(1), maximum: mg(1) },
+      buckets: [{ id: 'dust', usable: 1 as Milligrams, composition: of({ blue: 1 }) }],
+      maximumBuckets: 0,
+      worthOpening: 0 as Milligrams,
+    });
+    const plan = foldInBuckets(given);
+    expect(plan.fromBuckets).toEqual([]);
+    expect(verifyPlan(given, plan)).toEqual({ ok: true });
+  });
+
   test.each([
     ['a negative mass', { buckets: [{ id: 'a', usable: -1 as Milligrams, composition: target }] }],
     ['a bucket that stands twice', { buckets: [1, 2].map(() => ({ id: 'a', usable: mg(1), composition: target })) }],

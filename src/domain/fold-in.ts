@@ -1,6 +1,6 @@
 import type { Composition } from './composition.ts';
 import { FoldInError, requireProblem } from './fold-in-check.ts';
-import { prepareSearch } from './fold-in-node.ts';
+import { prepareSearch } from './fold-in-candidates.ts';
 import { branchAndBound } from './fold-in-search.ts';
 import type { Milligrams, PartsPerBillion } from './mass.ts';
 

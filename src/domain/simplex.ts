@@ -1,4 +1,4 @@
-/** max c·x with A·x ≤ b (b ≥ 0), 0 ≤ x ≤ u. Dense, bounded, primal; starts from the slack basis. */
+/** max c·x with A·x ≤ b, 0 ≤ x ≤ u. Dense, bounded, primal; starts from slacks, and from a penalty where b < 0. */
 export interface LinearProgram {
   objective: Float64Array;
   /** Row by row, `rows` × `columns`. */
@@ -14,6 +14,10 @@ export interface LinearOptimum {
 }
 
 const EPSILON = 1e-9;
+/** What a unit of a broken condition costs: far more than any objective of a batch gains. */
+const PENALTY = 1e5;
+/** In place of a column in the basis: the penalised amount by which a row is broken. It never comes back. */
+const BROKEN = -1;
 
 /** A floating-point optimum: good enough to steer a search, never to call a plan good. */
 export function solveBounded(program: LinearProgram): LinearOptimum {
@@ -49,13 +53,23 @@ class Tableau {
     this.inBasis = new Uint8Array(n + m);
     this.bounds.set(program.upper);
     this.costs.set(program.objective);
-    for (let i = 0; i < m; i++) {
-      this.cells.set(program.matrix.subarray(i * n, (i + 1) * n), i * this.width);
-      this.cells[i * this.width + n + i] = 1;
-      this.cells[i * this.width + this.width - 1] = program.right[i] as number;
-      this.basis[i] = n + i;
-      this.inBasis[n + i] = 1;
-    }
+    for (let i = 0; i < m; i++) this.addRow(program, i);
+  }
+
+  private addRow(program: LinearProgram, i: number): void {
+    const n = this.columns;
+    const at = i * this.width;
+    this.cells.set(program.matrix.subarray(i * n, (i + 1) * n), at);
+    this.cells[at + n + i] = 1;
+    this.cells[at + this.width - 1] = program.right[i] as number;
+    this.basis[i] = n + i;
+    this.inBasis[n + i] = 1;
+    if ((program.right[i] as number) >= 0) return;
+    for (let k = 0; k < this.width; k++) this.cells[at + k] = -(this.cells[at + k] as number);
+    for (let k = 0; k < this.width; k++)
+      this.costs[k] = (this.costs[k] as number) + PENALTY * (this.cells[at + k] as number);
+    this.basis[i] = BROKEN;
+    this.inBasis[n + i] = 0;
   }
 
   /** One step towards the optimum; false when there is none. `bland` ends cycles. */
@@ -98,8 +112,8 @@ class Tableau {
         const step = Math.max(0, value) / a;
         if (step < found.step) found = { row: i, step, toUpper: false };
       } else if (a < -EPSILON) {
-        const bound = this.bounds[this.basis[i] as number] as number;
-        if (bound === Infinity) continue;
+        const bound = this.bounds[this.basis[i] as number];
+        if (bound === undefined || bound === Infinity) continue;
         const step = Math.max(0, bound - value) / -a;
         if (step < found.step) found = { row: i, step, toUpper: true };
       }
@@ -135,7 +149,7 @@ class Tableau {
     for (let k = 0; k < this.width; k++) this.cells[at + k] = (this.cells[at + k] as number) / pivot;
     for (let i = 0; i < this.rows; i++) if (i !== row) this.eliminate(this.cells, i * this.width, at, j);
     this.eliminate(this.costs, 0, at, j);
-    this.inBasis[this.basis[row] as number] = 0;
+    if (this.basis[row] !== BROKEN) this.inBasis[this.basis[row] as number] = 0;
     this.inBasis[j] = 1;
     this.basis[row] = j;
   }
@@ -151,8 +165,10 @@ class Tableau {
 
   optimum(): LinearOptimum {
     const values = new Float64Array(this.width - 1);
-    for (let i = 0; i < this.rows; i++)
+    for (let i = 0; i < this.rows; i++) {
+      if (this.basis[i] === BROKEN) continue;
       values[this.basis[i] as number] = this.cells[i * this.width + this.width - 1] as number;
+    }
     const x = values.slice(0, this.columns);
     for (let j = 0; j < this.columns; j++) if (this.flipped[j]) x[j] = (this.bounds[j] as number) - (x[j] as number);
     const duals = new Float64Array(this.rows);
