@@ -7,5 +7,7 @@ export type Seen = Readonly<Record<string, number>>;
  */
 export function needsRecount(balanceMg: number, known: Seen, spend: { installId: string; seen: Seen }): boolean {
   if (balanceMg < 0) return true;
-  return Object.entries(known).some(([install, seq]) => install !== spend.installId && seq > (spend.seen[install] ?? 0));
+  return Object.entries(known).some(
+    ([install, seq]) => install !== spend.installId && seq > (spend.seen[install] ?? 0),
+  );
 }

@@ -2,7 +2,7 @@ import type { Addition, Filled, OperationBody } from '#contract/operation-bodies
 import { inherit } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import type { Milligrams } from '#domain/mass.ts';
-import { type BucketRow, moveBucket } from '#server/repositories/buckets.ts';
+import { moveBucket, requireBucket } from '#server/repositories/buckets.ts';
 import { requireOwn } from '#server/repositories/require-own.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
 import { drawLots } from './draw-lots.ts';
@@ -25,7 +25,7 @@ export async function applyBatchMixed(context: ApplyContext, body: BatchMixed): 
   await drawLots(context, body.additions);
   let n = 1;
   for (const source of sources)
-    if (source.bucket !== undefined) n = await takeFrom(context, source.bucket, source.addition, n);
+    if (source.bucket !== undefined) n = await takeFrom(context, source.bucket.id, source.addition, n);
   const mixture = mixtureOf(sources);
   const inherited = inherit(sources);
   for (const tub of body.filled) {
@@ -111,8 +111,12 @@ async function insertAdditions({ trx, shopId }: ApplyContext, body: BatchMixed):
   await trx.insertInto('additions').values(rows).execute();
 }
 
-/** What the books still hold of a tub that was scraped empty stays on its wall. */
-async function takeFrom(context: ApplyContext, bucket: BucketRow, addition: Addition, n: number): Promise<number> {
+/**
+ * What the books still hold of a tub that was scraped empty stays on its wall. Read anew: a batch may take from one tub
+ * twice.
+ */
+async function takeFrom(context: ApplyContext, bucketId: string, addition: Addition, n: number): Promise<number> {
+  const bucket = await requireBucket(context, bucketId);
   const empties = addition.kind === 'bucket' && addition.empties;
   const rest = bucket.balanceMg - addition.actualMg;
   const movements = [{ kind: 'folded-in' as const, deltaMg: -addition.actualMg }];
