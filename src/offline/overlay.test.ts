@@ -229,6 +229,16 @@ describe('a mixed batch', () => {
     });
   });
 
+  test('is the same blend in whatever order it was weighed, to the last part per billion', () => {
+    const thirds = ['a', 'b', 'c'].map(() => fresh(uuidv7(), 100));
+    const compositionOf = (additions: typeof thirds) => {
+      const mixed = batchMixed(additions);
+      const shown = foldPending(shownOf(), [operationOf(mixed)], known);
+      return shown.buckets.get(mixed.body.filled[0]?.bucketId as string)?.composition;
+    };
+    expect(compositionOf(thirds)).toEqual(compositionOf([...thirds].reverse()));
+  });
+
   test('weighed twice from one tub lowers it twice and names it once', () => {
     const leftover = tubRow({ composition: pure(blue), balanceMg: 500_000 });
     const mixed = batchMixed([fromTub(leftover.id, 100_000), fromTub(leftover.id, 50_000)]);
