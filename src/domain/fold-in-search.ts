@@ -4,13 +4,16 @@ import type { Search } from './fold-in-candidates.ts';
 import { certify } from './fold-in-certificate.ts';
 import { FoldInError } from './fold-in-check.ts';
 import { planNear, planWith } from './fold-in-incumbent.ts';
+import { Frontier } from './fold-in-frontier.ts';
 import { type Relaxed, relax } from './fold-in-relaxation.ts';
 import type { Rounded } from './fold-in-round.ts';
 import type { Decision, Decisions } from './fold-in-rows.ts';
 import type { Milligrams } from './mass.ts';
 
-/** Cells of relaxations after which the best plan is taken with its gap: about two seconds of a desk computer. */
-const MOST_WORK = 10_000_000;
+/** Cells of relaxations after which the best plan is taken with its gap: a second or two of a desk computer. */
+const MOST_WORK = 3_000_000;
+/** What a relaxation costs beside its cells. */
+const NODE_WORK = 1000;
 /** Bounds that are taken exactly; where more are tied, the floating one and its margin stand for them. */
 const MOST_EXACT = 200;
 const YIELD_EVERY = 20;
@@ -23,12 +26,14 @@ type Progress = { plan: FoldInPlan; bound: Milligrams };
 export function* branchAndBound(search: Search): Generator<Progress, FoldInPlan> {
   const root = relax(search, startOf(search), []);
   let best = firstPlan(search, root);
-  const open: Relaxed[] = [root];
+  const open = new Frontier();
+  open.push(root);
   /** Not worth following, or without a way on: no plan of theirs exceeds their bound. */
   const ended: Relaxed[] = [];
   let work = 0;
-  for (let visited = 0; open.length > 0 && work < MOST_WORK; visited++) {
-    const node = takeBest(open);
+  for (let visited = 0; work < MOST_WORK; visited++) {
+    const node = open.pop();
+    if (node === undefined) break;
     if (node.bound.value <= best.objective + allowance(best, search)) {
       ended.push(node);
       break;
@@ -38,15 +43,15 @@ export function* branchAndBound(search: Search): Generator<Progress, FoldInPlan>
     if (ways.length === 0) ended.push(node);
     for (const way of ways) {
       const child = relax(search, way, node.excesses);
-      work += child.cells;
+      work += child.cells + NODE_WORK;
       if (child.bound.value > best.objective - MARGIN) open.push(child);
     }
     if (visited % YIELD_EVERY === YIELD_EVERY - 1) {
-      const plan = describe(search, best, floatingBound([...open, ...ended]));
+      const plan = describe(search, best, floatingBound([...open.nodes, ...ended]));
       yield { plan, bound: plan.objectiveBound };
     }
   }
-  return describe(search, best, exactBound(search, [...open, ...ended]));
+  return describe(search, best, exactBound(search, [...open.nodes, ...ended]));
 }
 
 function startOf(search: Search): Decisions {
@@ -63,22 +68,6 @@ function firstPlan(search: Search, root: Relaxed): Rounded {
   if (plan !== undefined) return plan;
   if (buckets.includes('emptied')) throw new FoldInError('That tub cannot be emptied into this batch.');
   throw new FoldInError('This batch cannot be weighed on this scale.');
-}
-
-/** Of bounds that are the same but for a milligram, the node with the most decisions. */
-function takeBest(open: Relaxed[]): Relaxed {
-  let at = 0;
-  let most = -Infinity;
-  open.forEach(({ bound, depth }, n) => {
-    const rank = bound.value + Math.min(MARGIN, depth / 1000);
-    if (rank <= most) return;
-    most = rank;
-    at = n;
-  });
-  const taken = open[at] as Relaxed;
-  open[at] = open.at(-1) as Relaxed;
-  open.pop();
-  return taken;
 }
 
 /** Closes the candidates that cannot be part of a plan better than the best one: their score shows it. */
