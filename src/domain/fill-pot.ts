@@ -41,24 +41,29 @@ export function fillPot(pot: Pot, batch: Milligrams): Map<string, Milligrams> | 
   const held = [...pot.contents.values()].reduce((a, b) => a + b, 0n);
   const steps = (BigInt(batch) * PPB - held) / unit;
   if (BigInt(batch) * PPB < held) return undefined;
-  const needs = exactNeeds(pot, held + steps * unit);
+  const parts = partsOf(pot, held + steps * unit);
+  const needs = exactNeeds(pot, parts, held + steps * unit);
   if (needs === undefined) return undefined;
-  const bounded = [...needs].map(([id, need]): Need => {
-    const lower = maximum(need / unit, BigInt(pot.least?.get(id) ?? 0) / BigInt(pot.readability));
-    return { need, lower, upper: maximum(ceilDivide(need, unit), lower) };
-  });
+  const bounded = needs.map((need, n) => stepsOf(need, parts[n] as Part, unit));
   const found = minMaxSteps(bounded, unit, steps);
   if (found === undefined) return undefined;
-  return new Map(
-    [...needs.keys()].map((id, n) => [id, (Number(found.steps[n]) * pot.readability) as Milligrams] as const),
-  );
+  return new Map(parts.map(({ id }, n) => [id, (Number(found.steps[n]) * pot.readability) as Milligrams] as const));
+}
+
+/** The step below the need or the one above it, neither past what the tolerance and a step of rounding allow. */
+function stepsOf(need: bigint, { held, floor, ceiling }: Part, unit: bigint): Need {
+  const least = ceilDivide(floor - held, unit);
+  const most = (ceiling - held) / unit;
+  const lower = maximum(need / unit, least);
+  const upper = ceilDivide(need, unit);
+  return { need, lower, upper: maximum(lower, upper < most ? upper : most) };
 }
 
 interface Part {
   id: string;
   goal: bigint;
   held: bigint;
-  /** The least it may come to: what the pot holds, or the lower edge of its tolerance. */
+  /** The least it may come to: what the pot holds, or the lower edge of its tolerance, one step of rounding included. */
   floor: bigint;
   /** The most it may come to, one scale step of rounding included. */
   ceiling: bigint;
@@ -68,24 +73,28 @@ interface Part {
  * Exact fresh amounts (mg·ppb) that make up `total`: each component at λ of its goal or at its floor, whichever is
  * more; λ takes up what is over, or missing, elsewhere.
  */
-function exactNeeds(pot: Pot, total: bigint): Map<string, bigint> | undefined {
-  const parts = [...pot.target].map(([id, share]) => partOf(pot, total, id, share));
+function exactNeeds(pot: Pot, parts: readonly Part[], total: bigint): bigint[] | undefined {
   let room = total;
   for (const [id, held] of pot.contents) if (!pot.target.has(id)) room -= held;
   const fixed = new Set(parts.flatMap((part, n) => (pot.settled?.has(part.id) ? [n] : [])));
   const levels = waterLevels(parts, room, fixed);
   if (levels === undefined || parts.some((part, n) => (levels[n] as bigint) > part.ceiling)) return undefined;
-  return new Map(parts.map((part, n) => [part.id, (levels[n] as bigint) - part.held]));
+  return parts.map((part, n) => (levels[n] as bigint) - part.held);
+}
+
+function partsOf(pot: Pot, total: bigint): Part[] {
+  return [...pot.target].map(([id, share]) => partOf(pot, total, id, share));
 }
 
 function partOf(pot: Pot, total: bigint, id: string, share: number): Part {
+  const step = BigInt(pot.readability) * PPB;
   const tolerance = BigInt(pot.tolerance.get(id) ?? 0);
   const goal = (total * BigInt(share)) / PPB;
   const slack = (total * tolerance) / PPB;
   const held = pot.contents.get(id) ?? 0n;
   const atLeast = held + BigInt(pot.least?.get(id) ?? 0) * PPB;
-  const floor = pot.settled?.has(id) ? held : maximum(atLeast, goal > slack ? goal - slack : 0n);
-  return { id, goal, held, floor, ceiling: goal + slack + BigInt(pot.readability) * PPB };
+  const floor = pot.settled?.has(id) ? held : maximum(atLeast, goal - slack - step);
+  return { id, goal, held, floor, ceiling: goal + slack + step };
 }
 
 function maximum(a: bigint, b: bigint): bigint {

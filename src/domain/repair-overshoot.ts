@@ -42,7 +42,8 @@ export function repairOvershoot(input: RepairInput): Repair {
   const least = leastBatch(input.target, input.tolerance, contents, input.readability);
   const keep = { kind: 'keep-as-leftover', batch: held, removed: 0 as Milligrams, additions: new Map() } as const;
   if (least === undefined) {
-    return { state: 'beyond-repair', choices: [{ ...keep, worstDeviation: deviation(input.target, contents) }] };
+    const kept = { ...keep, worstDeviation: deviation(input.target, contents) };
+    return { state: 'beyond-repair', choices: [...takenBack(input, contents), kept] };
   }
   if (least <= input.planned) {
     const carryOn = grown(input, contents, held, input.planned, 'carry-on');
@@ -58,26 +59,57 @@ function grown(
   least: Milligrams,
   kind: 'carry-on' | 'grow',
 ): RepairChoice[] {
+  const filled = fillFrom(input, contents, held, least);
+  if (filled === undefined) return [];
+  const { batch, additions } = filled;
+  if (batch > input.capacity) return scoopedOut(input, contents, held, batch);
+  const worstDeviation = deviation(input.target, withAdditions(contents, additions));
+  return [{ kind, batch, removed: 0 as Milligrams, additions, worstDeviation }];
+}
+
+/** The first batch from `least` on that whole steps can fill; where the rounding that was let pass adds up, a later one. */
+function fillFrom(
+  input: RepairInput,
+  contents: Contents,
+  held: Milligrams,
+  least: Milligrams,
+): { batch: Milligrams; additions: ReadonlyMap<string, Milligrams> } | undefined {
   const d = input.readability;
-  let batch = (held + Math.max(0, Math.ceil((least - held) / d)) * d) as Milligrams;
-  const pot = { ...input, contents };
-  // Rounding to the step can need a step more than the exact root.
-  let additions = fillPot(pot, batch);
-  for (let tries = 0; additions === undefined && tries < 3; tries++) {
-    batch = (batch + d) as Milligrams;
-    additions = fillPot(pot, batch);
+  const strict = leastBatch(input.target, input.tolerance, contents, 0 as Milligrams) ?? least;
+  for (const start of [least, Math.max(least, strict)]) {
+    for (let tries = 0; tries <= input.target.size; tries++) {
+      const batch = (held + (Math.max(0, Math.ceil((start - held) / d)) + tries) * d) as Milligrams;
+      const filled = fillPot({ ...input, contents }, batch);
+      if (filled !== undefined) return { batch, additions: new Map([...filled].filter(([, mass]) => mass > 0)) };
+    }
   }
-  if (additions === undefined) return [];
+  return undefined;
+}
+
+/** Once mixed, P(1 − C/M') out, as a labelled leftover, lets the rest grow inside the container. */
+function scoopedOut(input: RepairInput, contents: Contents, held: Milligrams, batch: Milligrams): RepairChoice[] {
+  const d = input.readability;
+  const least = Math.ceil((held * (1 - input.capacity / batch)) / d) * d;
+  for (let removed = least; removed < Math.min(held, least + 4 * d); removed += d) {
+    const left = BigInt(held - removed);
+    const rest = new Map([...contents].map(([id, amount]) => [id, (amount * left) / BigInt(held)]));
+    const kept = massOf(rest);
+    const goal = (kept + Math.floor((input.capacity - kept) / d) * d) as Milligrams;
+    const additions = fillPot({ ...input, contents: rest }, goal);
+    if (additions === undefined) continue;
+    const worstDeviation = deviation(input.target, withAdditions(rest, additions));
+    const total = held - removed + [...additions.values()].reduce((sum, mass) => sum + mass, 0);
+    return [
+      { kind: 'scoop-out', batch: total as Milligrams, removed: removed as Milligrams, additions, worstDeviation },
+    ];
+  }
+  return [];
+}
+
+function withAdditions(contents: Contents, additions: ReadonlyMap<string, Milligrams>): Contents {
   const final = new Map(contents);
   for (const [id, mass] of additions) final.set(id, (final.get(id) ?? 0n) + BigInt(mass) * PPB);
-  const worstDeviation = deviation(input.target, final);
-  if (batch <= input.capacity) return [{ kind, batch, removed: 0 as Milligrams, additions, worstDeviation }];
-  // Once mixed, P(1 − M/M') scooped out lets the rest grow inside the container.
-  const removed = (Math.ceil((held * (1 - input.capacity / batch)) / d) * d) as Milligrams;
-  const scaled = new Map(
-    [...additions].map(([id, mass]) => [id, (Math.round((mass * (held - removed)) / held / d) * d) as Milligrams]),
-  );
-  return [{ kind: 'scoop-out', batch: input.capacity, removed, additions: scaled, worstDeviation }];
+  return final;
 }
 
 /** Taking the surplus of the last addition out again, into a labelled cup. */
