@@ -122,7 +122,7 @@ function finish(search: Search, fromBuckets: Rounded['fromBuckets'], fresh: Map<
   const reused = fromBuckets.reduce((sum, from) => sum + from.mass, 0);
   const freshMass = [...fresh.values()].reduce((sum, mass) => sum + mass, 0);
   const paid = search.problem.worthOpening * fromBuckets.length;
-  const saved = search.greatest > search.least ? -freshMass : reused;
+  const saved = search.greatest > search.least ? 0 - freshMass : reused;
   return {
     batch: (reused + freshMass) as Milligrams,
     reused: reused as Milligrams,

@@ -25,7 +25,7 @@ type Progress = { plan: FoldInPlan; bound: Milligrams };
 /** Best bound first; every plan that is kept verifies exactly, and the bound that is told is computed exactly. */
 export function* branchAndBound(search: Search): Generator<Progress, FoldInPlan> {
   const root = relax(search, startOf(search), []);
-  let best = firstPlan(search, root);
+  let best = better(firstPlan(search, root), planNear(search, root));
   const open = new Frontier();
   open.push(root);
   /** Not worth following, or without a way on: no plan of theirs exceeds their bound. */
@@ -88,7 +88,7 @@ function better(best: Rounded, found: Rounded | undefined): Rounded {
 
 /** A bound this near is the same plan: a step for each bucket is lost in rounding, and a millionth is no ink. */
 function allowance(best: Rounded, search: Search): number {
-  const rounding = search.problem.readability * (best.fromBuckets.length + 1);
+  const rounding = search.problem.readability * Math.max(1, best.fromBuckets.length);
   return Math.max(rounding, Math.abs(best.objective) * 1e-6);
 }
 
