@@ -1,6 +1,7 @@
 import type { Composition } from './composition.ts';
 import { type Milligrams, type PartsPerBillion, WHOLE } from './mass.ts';
 import { type Need, ceilDivide, minMaxSteps } from './min-max-steps.ts';
+import { waterLevels } from './water-levels.ts';
 
 export type Tolerance = ReadonlyMap<string, PartsPerBillion>;
 
@@ -32,99 +33,83 @@ export interface Pot {
 
 /**
  * Fresh ink on the scale's steps that fills the pot up to `batch` with each component as near to its target as its
- * tolerance and what lies in the pot allow.
+ * tolerance and what lies in the pot allow; a step of rounding is let pass beside the tolerance.
  * @param batch mg; where it does not differ from the contents by whole steps, the nearest total below counts
  * @returns undefined when no filling keeps within the tolerances
  */
 export function fillPot(pot: Pot, batch: Milligrams): Map<string, Milligrams> | undefined {
   const unit = BigInt(pot.readability) * PPB;
   const held = [...pot.contents.values()].reduce((a, b) => a + b, 0n);
-  const steps = (BigInt(batch) * PPB - held) / unit;
   if (BigInt(batch) * PPB < held) return undefined;
-  const parts = partsOf(pot, held + steps * unit);
-  const needs = exactNeeds(pot, parts, held + steps * unit);
-  if (needs === undefined) return undefined;
-  const bounded = needs.map((need, n) => stepsOf(need, parts[n] as Part, unit));
-  const found = minMaxSteps(bounded, unit, steps);
+  const steps = (BigInt(batch) * PPB - held) / unit;
+  const total = held + steps * unit;
+  const parts = [...pot.target].map(([id, share]) => partOf(pot, total, id, share));
+  const needs = exactNeeds(pot, parts, total, 0n) ?? exactNeeds(pot, parts, total, unit);
+  const found = needs && roundNeeds(needs, parts, unit, steps);
   if (found === undefined) return undefined;
-  return new Map(parts.map(({ id }, n) => [id, (Number(found.steps[n]) * pot.readability) as Milligrams] as const));
+  return new Map(parts.map(({ id }, n) => [id, (Number(found[n]) * pot.readability) as Milligrams] as const));
 }
 
-/** The step below the need or the one above it, neither past what the tolerance and a step of rounding allow. */
-function stepsOf(need: bigint, { held, floor, ceiling }: Part, unit: bigint): Need {
-  const least = ceilDivide(floor - held, unit);
-  const most = (ceiling - held) / unit;
-  const lower = maximum(need / unit, least);
-  const upper = ceilDivide(need, unit);
-  return { need, lower, upper: maximum(lower, upper < most ? upper : most) };
-}
-
+/** What one component holds, should come to, and may come to, mg·ppb. */
 interface Part {
   id: string;
   goal: bigint;
   held: bigint;
-  /** The least it may come to: what the pot holds, or the lower edge of its tolerance, one step of rounding included. */
-  floor: bigint;
-  /** The most it may come to, one scale step of rounding included. */
-  ceiling: bigint;
-}
-
-/**
- * Exact fresh amounts (mg·ppb) that make up `total`: each component at λ of its goal or at its floor, whichever is
- * more; λ takes up what is over, or missing, elsewhere.
- */
-function exactNeeds(pot: Pot, parts: readonly Part[], total: bigint): bigint[] | undefined {
-  let room = total;
-  for (const [id, held] of pot.contents) if (!pot.target.has(id)) room -= held;
-  const fixed = new Set(parts.flatMap((part, n) => (pot.settled?.has(part.id) ? [n] : [])));
-  const levels = waterLevels(parts, room, fixed);
-  if (levels === undefined || parts.some((part, n) => (levels[n] as bigint) > part.ceiling)) return undefined;
-  return parts.map((part, n) => (levels[n] as bigint) - part.held);
-}
-
-function partsOf(pot: Pot, total: bigint): Part[] {
-  return [...pot.target].map(([id, share]) => partOf(pot, total, id, share));
+  /** With the fresh ink that it gets at least. */
+  least: bigint;
+  lower: bigint;
+  upper: bigint;
+  settled: boolean;
 }
 
 function partOf(pot: Pot, total: bigint, id: string, share: number): Part {
-  const step = BigInt(pot.readability) * PPB;
-  const tolerance = BigInt(pot.tolerance.get(id) ?? 0);
   const goal = (total * BigInt(share)) / PPB;
-  const slack = (total * tolerance) / PPB;
+  const slack = (total * BigInt(pot.tolerance.get(id) ?? 0)) / PPB;
   const held = pot.contents.get(id) ?? 0n;
-  const atLeast = held + BigInt(pot.least?.get(id) ?? 0) * PPB;
-  const floor = pot.settled?.has(id) ? held : maximum(atLeast, goal - slack - step);
-  return { id, goal, held, floor, ceiling: goal + slack + step };
+  const least = held + BigInt(pot.least?.get(id) ?? 0) * PPB;
+  return { id, goal, held, least, lower: goal - slack, upper: goal + slack, settled: pot.settled?.has(id) === true };
+}
+
+/** Exact fresh amounts that make up `total`, within the tolerances widened by `rounding`. */
+function exactNeeds(pot: Pot, parts: readonly Part[], total: bigint, rounding: bigint): bigint[] | undefined {
+  const step = BigInt(pot.readability) * PPB;
+  let room = total;
+  for (const [id, held] of pot.contents) if (!pot.target.has(id)) room -= held;
+  if (parts.some((part) => part.least > part.upper + step)) return undefined;
+  const basins = parts.map((part) => {
+    if (part.settled) return { goal: part.goal, floor: part.held, ceiling: part.held };
+    const floor = maximum(part.least, part.lower - rounding);
+    return { goal: part.goal, floor, ceiling: maximum(floor, part.upper + rounding) };
+  });
+  return waterLevels(basins, room)?.map((level, n) => level - (parts[n] as Part).held);
+}
+
+/** The step below each need or the one above it; where their sum cannot be, a few more steps off. */
+function roundNeeds(
+  needs: readonly bigint[],
+  parts: readonly Part[],
+  unit: bigint,
+  steps: bigint,
+): readonly bigint[] | undefined {
+  const within = (off: bigint) =>
+    minMaxSteps(
+      needs.map((need, n) => stepsOf(need, parts[n] as Part, unit, off)),
+      unit,
+      steps,
+    );
+  return (within(0n) ?? within(BigInt(parts.length)))?.steps;
+}
+
+/** Neither past what the tolerance and a step of rounding allow. */
+function stepsOf(need: bigint, part: Part, unit: bigint, off: bigint): Need {
+  if (part.settled) return { need, lower: 0n, upper: 0n };
+  const least = ceilDivide(maximum(part.least, part.lower - unit) - part.held, unit);
+  const most = (part.upper + unit - part.held) / unit;
+  const lower = maximum(need / unit - off, least);
+  const upper = ceilDivide(need, unit) + off;
+  return { need, lower, upper: maximum(lower, upper < most ? upper : most) };
 }
 
 function maximum(a: bigint, b: bigint): bigint {
   return a > b ? a : b;
-}
-
-/** Levels max(floor, λ·goal) that add up to `room`; a component that stands above λ·goal is fixed at its floor. */
-function waterLevels(parts: readonly Part[], room: bigint, fixed: Set<number>): bigint[] | undefined {
-  for (;;) {
-    const free = parts.reduce((left, part, n) => (fixed.has(n) ? left - part.floor : left), room);
-    const goals = parts.reduce((sum, part, n) => (fixed.has(n) ? sum : sum + part.goal), 0n);
-    if (free < 0n) return undefined;
-    const above = parts.findIndex((part, n) => !fixed.has(n) && part.floor * goals > part.goal * free);
-    if (above !== -1) {
-      fixed.add(above);
-      continue;
-    }
-    if (goals === 0n) return free === 0n ? parts.map((part) => part.floor) : undefined;
-    return spread(parts, fixed, free, goals);
-  }
-}
-
-/** λ·goal for the free ones; the largest of them takes what the whole division loses. */
-function spread(parts: readonly Part[], fixed: ReadonlySet<number>, free: bigint, goals: bigint): bigint[] {
-  const levels = parts.map((part, n) => (fixed.has(n) ? part.floor : (part.goal * free) / goals));
-  const given = levels.reduce((sum, level, n) => (fixed.has(n) ? sum : sum + level), 0n);
-  let largest = -1;
-  parts.forEach((part, n) => {
-    if (!fixed.has(n) && (largest === -1 || part.goal > (parts[largest] as Part).goal)) largest = n;
-  });
-  levels[largest] = (levels[largest] as bigint) + free - given;
-  return levels;
 }

@@ -1,5 +1,6 @@
 import type { Composition } from './composition.ts';
 import { type Contents, type Tolerance, contentsOf, fillPot } from './fill-pot.ts';
+import { fillFrom } from './fill-from.ts';
 import { leastBatch } from './least-batch.ts';
 import { type Milligrams, type PartsPerBillion, WHOLE, requireStep } from './mass.ts';
 
@@ -59,31 +60,12 @@ function grown(
   least: Milligrams,
   kind: 'carry-on' | 'grow',
 ): RepairChoice[] {
-  const filled = fillFrom(input, contents, held, least);
+  const filled = fillFrom({ ...input, contents }, held, least);
   if (filled === undefined) return [];
   const { batch, additions } = filled;
   if (batch > input.capacity) return scoopedOut(input, contents, held, batch);
   const worstDeviation = deviation(input.target, withAdditions(contents, additions));
   return [{ kind, batch, removed: 0 as Milligrams, additions, worstDeviation }];
-}
-
-/** The first batch from `least` on that whole steps can fill; where the rounding that was let pass adds up, a later one. */
-function fillFrom(
-  input: RepairInput,
-  contents: Contents,
-  held: Milligrams,
-  least: Milligrams,
-): { batch: Milligrams; additions: ReadonlyMap<string, Milligrams> } | undefined {
-  const d = input.readability;
-  const strict = leastBatch(input.target, input.tolerance, contents, 0 as Milligrams) ?? least;
-  for (const start of [least, Math.max(least, strict)]) {
-    for (let tries = 0; tries <= input.target.size; tries++) {
-      const batch = (held + (Math.max(0, Math.ceil((start - held) / d)) + tries) * d) as Milligrams;
-      const filled = fillPot({ ...input, contents }, batch);
-      if (filled !== undefined) return { batch, additions: new Map([...filled].filter(([, mass]) => mass > 0)) };
-    }
-  }
-  return undefined;
 }
 
 /** Once mixed, P(1 − C/M') out, as a labelled leftover, lets the rest grow inside the container. */

@@ -1,5 +1,6 @@
 import type { Composition } from './composition.ts';
 import { type Contents, type Pot, type Tolerance, contentsOf, fillPot } from './fill-pot.ts';
+import { fillFrom } from './fill-from.ts';
 import { leastBatch } from './least-batch.ts';
 import { type Milligrams, WHOLE } from './mass.ts';
 
@@ -58,7 +59,7 @@ export function replanSteps(input: Replan): { batch: Milligrams; steps: Weighing
   const settled = settledComponents(pot, order, asked);
   if (order.length === 0 && settled.size === input.target.size) return { batch: held, steps: leftovers };
   const batch = onStep(Math.max(least, settledBatch(pot, settled, asked)), held, input.readability);
-  const fresh = fillPot({ ...pot, settled }, batch) ?? fillPot(pot, asked);
+  const fresh = fillPot({ ...pot, settled }, batch) ?? fillFrom(pot, held, asked)?.additions;
   if (fresh === undefined) return { batch: asked, steps: [...input.remaining] };
   const total = held + [...fresh.values()].reduce((sum, mass) => sum + mass, 0);
   return { batch: total as Milligrams, steps: [...leftovers, ...freshSteps(fresh, order)] };
