@@ -1,12 +1,12 @@
-import type { Search } from './fold-in-candidates.ts';
-import type { Decisions, Row } from './fold-in-rows.ts';
+import type { Candidate, Search } from './fold-in-candidates.ts';
+import { type Decision, type Decisions, type Fresh, isOpened } from './fold-in-decisions.ts';
+import { type Relaxation, type Row, deviationIn } from './fold-in-program.ts';
 import { WHOLE } from './mass.ts';
 
-/** Multipliers π ≥ 0 of rows: with the decisions they are a certificate that anyone can evaluate. */
+/** Any multipliers of the rows: with the decisions they are a certificate that anyone can evaluate. */
 export interface Certificate {
   decisions: Decisions;
-  rows: readonly Row[];
-  multipliers: readonly number[];
+  multipliers: Float64Array;
 }
 
 export interface Bound {
@@ -14,69 +14,80 @@ export interface Bound {
   value: number;
   /** mg that each candidate adds to the bound when it is opened; −∞ for one that is closed. */
   scores: Float64Array;
-  /** The least score that is counted, and the greatest that is not: both 0 or more. */
+  /** The least score that is counted: 0 or more. */
   counted: number;
-  next: number;
 }
 
-/** R ≤ π·b + Σ of the K greatest u·max(0, v − π·r) − κ, in floating point: steers, does not prove. */
-export function boundOf(search: Search, { decisions, rows, multipliers }: Certificate): Bound {
-  const { problem, candidates, minimum } = search;
-  const prices = new Float64Array(search.components.length);
-  let each = 0;
-  let value = 0;
-  let ofBatch = search.greatest > search.least ? -1 : 0;
-  value += ofBatch * search.least;
-  rows.forEach((row, n) => {
-    const pi = multipliers[n] as number;
-    if (pi === 0) return;
-    row.weights.forEach((weight, j) => (prices[j] = (prices[j] as number) + pi * weight));
-    each += pi * row.each;
-    value += pi * ((search.least * row.ppb) / WHOLE - row.reserve);
+/**
+ * Weak duality: whatever π, the objective is at most π·b + Σ over slacks and deviations of the better end of their range
+ * + Σ of the K greatest scores of buckets. In floating point: steers, does not prove.
+ */
+export function boundOf(search: Search, relaxation: Relaxation, { decisions, multipliers }: Certificate): Bound {
+  const { rows, program, deviating } = relaxation;
+  const width = program.gains.length;
+  const range = search.greatest - search.least;
+  let value = relaxation.isRanged ? -search.least : 0;
+  let ofBatch = -1;
+  for (let r = 0; r < rows.length; r++) {
+    const pi = multipliers[r] as number;
+    if (pi === 0) continue;
+    const row = rows[r] as Row;
+    const { least, most } = slackLimits(search, row, decisions.fresh[row.component]);
+    value += (pi * row.ppb * search.least) / WHOLE - pi * (pi > 0 ? least : most);
     ofBatch += (pi * row.ppb) / WHOLE;
-  });
-  value += (search.greatest - search.least) * Math.max(0, ofBatch);
-  const scores = new Float64Array(candidates.length).fill(-Infinity);
-  let left = problem.maximumBuckets;
-  candidates.forEach((candidate, n) => {
-    const decision = decisions.buckets[n];
+  }
+  if (relaxation.isRanged) value += Math.max(0, ofBatch) * range;
+  for (const j of deviating) {
+    let gain = 0;
+    for (let r = 0; r < rows.length; r++) {
+      const pi = multipliers[r] as number;
+      if (pi !== 0) gain -= pi * deviationIn(rows[r] as Row, j);
+    }
+    const edge = ((gain > 0 ? search.upper[j] : search.lower[j]) as number) - (search.target[j] as number);
+    value += (gain * edge * search.greatest) / WHOLE;
+  }
+  const scores = new Float64Array(search.candidates.length).fill(-Infinity);
+  let left = search.problem.maximumBuckets;
+  search.candidates.forEach((candidate, i) => {
+    const decision = decisions.buckets[i] as Decision;
     if (decision === 'closed') return;
-    let gain = 1 - each;
-    candidate.shares.forEach((share, j) => (gain -= share * (prices[j] as number)));
-    const partly = gain * (gain > 0 ? candidate.most : minimum);
-    const score = bestWay(decision, candidate.canEmpty, candidate.most >= minimum, gain * candidate.usable, partly);
-    scores[n] = score - problem.worthOpening;
-    if (decision === 'free') return;
-    value += scores[n] as number;
+    let gain = 1;
+    for (let r = 0; r < rows.length; r++) {
+      gain -= (multipliers[r] as number) * (program.matrix[r * width + i] as number);
+    }
+    const score = scoreOf(candidate, decision, gain, search.minimum) - search.problem.worthOpening;
+    scores[i] = score;
+    if (!isOpened(decision)) return;
+    value += score;
     left -= 1;
   });
-  return { ...addBest(value, scores, decisions, left), scores };
+  return { ...addGreatest(value, scores, decisions, left), scores };
 }
 
-function bestWay(
-  decision: string | undefined,
-  canEmpty: boolean,
-  canTake: boolean,
-  emptied: number,
-  partly: number,
-): number {
-  if (decision === 'emptied') return emptied;
-  if (decision === 'partial') return partly;
-  return Math.max(canEmpty ? emptied : -Infinity, canTake ? partly : -Infinity);
+/** mg between which a slack lies. */
+export function slackLimits(search: Search, row: Row, fresh: Fresh | undefined): { least: number; most: number } {
+  const most = (row.most * search.greatest) / WHOLE;
+  if (row.kind !== 'fresh' || fresh === 'free') return { least: 0, most };
+  if (fresh === 'none') return { least: 0, most: 0 };
+  const least = search.leastFresh[row.component] as number;
+  return { least, most: Math.max(least, most) };
 }
 
-function addBest(
-  value: number,
-  scores: Float64Array,
-  decisions: Decisions,
-  left: number,
-): Pick<Bound, 'value' | 'counted' | 'next'> {
-  if (left < 0) return { value: -Infinity, counted: 0, next: 0 };
-  const open = [...scores].filter((score, n) => decisions.buckets[n] === 'free' && score > 0).sort((a, b) => b - a);
-  const counted = open.slice(0, left).reduce((sum, score) => sum + score, 0);
-  return {
-    value: value + counted,
-    counted: open.length >= left ? (open[left - 1] ?? 0) : 0,
-    next: open[left] ?? 0,
-  };
+function scoreOf({ canEmpty, usable, most }: Candidate, decision: Decision, gain: number, minimum: number): number {
+  if (decision === 'emptied') return gain * usable;
+  const partly = most >= minimum ? gain * (gain > 0 ? most : minimum) : -Infinity;
+  return decision === 'partial' || !canEmpty ? partly : Math.max(partly, gain * usable);
+}
+
+function addGreatest(value: number, scores: Float64Array, { buckets }: Decisions, left: number): Omit<Bound, 'scores'> {
+  if (left < 0) return { value: -Infinity, counted: 0 };
+  const gained: number[] = [];
+  scores.forEach((score, i) => {
+    if (score > 0 && buckets[i] === 'free') gained.push(score);
+  });
+  gained.sort((a, b) => b - a);
+  const counted = Math.min(gained.length, left);
+  let sum = value;
+  for (let n = 0; n < counted; n++) sum += gained[n] as number;
+  return { value: sum, counted: gained.length >= left ? (gained[left - 1] ?? 0) : 0 };
 }

@@ -1,97 +1,91 @@
-import type { Search } from './fold-in-candidates.ts';
-import type { Relaxed } from './fold-in-relaxation.ts';
-import type { Decision, Decisions, Fresh } from './fold-in-rows.ts';
-import { WHOLE } from './mass.ts';
+import type { Candidate } from './fold-in-candidates.ts';
+import { type Change, type Decision, limitsOf, mostOf } from './fold-in-decisions.ts';
+import { NOTHING, type Node, type Subset } from './fold-in-subset.ts';
 
-const EPSILON = 1e-3;
+/** What keeps a relaxation from being a plan, and the ways to decide it: of a bucket or of a component's fresh ink. */
+export interface Question {
+  ways: readonly Change[];
+  /** 0 to 1: how near the relaxation is to the first way of the list. */
+  nearness: number;
+  /** mg that are at stake. */
+  weight: number;
+}
 
-/** The ways on from a relaxation that is not yet a plan: of a bucket, else of a component; none when it is one. */
-export function branch(search: Search, relaxed: Relaxed): Decisions[] {
-  const { decisions } = relaxed.certificate;
-  const n = undecidedBucket(search, relaxed);
-  if (n !== -1) {
-    const candidate = search.candidates[n];
-    const ways: Decision[] = ['closed'];
-    if (candidate?.canEmpty) ways.push('emptied');
-    if (candidate && candidate.most >= search.minimum) ways.push('partial');
-    return ways.map((way) => ({ ...decisions, buckets: replaced(decisions.buckets, n, way) }));
+/** None when the relaxation is a plan, before rounding to the scale's steps. */
+export function questionsOf(subset: Subset): Question[] {
+  const { search, decisions } = subset;
+  const { taken } = subset;
+  const questions: Question[] = [];
+  const countsInPart = search.problem.worthOpening > 0 || !fitsCount(subset, taken);
+  search.candidates.forEach((candidate, i) => {
+    const mass = taken[i] as number;
+    const decision = decisions.buckets[i] as Decision;
+    if (decision === 'free' && mass > NOTHING) {
+      const open = limitsOf(candidate, 'open', search.minimum);
+      const isInPart = countsInPart && mass < mostOf(candidate) - NOTHING;
+      if (!isInPart && mass >= open.least - NOTHING && !isInGap(candidate, mass)) return;
+      const nearness = mass / mostOf(candidate);
+      const weight = Math.min(mass, mostOf(candidate) - mass) + NOTHING;
+      questions.push({ ways: [opening(candidate, i), { bucket: i, to: 'closed' }], nearness, weight });
+    } else if (decision === 'open' && isInGap(candidate, mass)) {
+      const ways = (['emptied', 'partial'] as const).map((to) => ({ bucket: i, to }));
+      questions.push({ ways, nearness: 0.5, weight: candidate.usable - mass });
+    }
+  });
+  search.components.forEach((_, j) => {
+    const least = search.leastFresh[j] as number;
+    if (search.target[j] === 0 || decisions.fresh[j] !== 'free') return;
+    const mass = subset.freshOf(j);
+    if (mass < NOTHING || mass > least - NOTHING) return;
+    const ways = (['some', 'none'] as const).map((to) => ({ component: j, to }));
+    // Little ink, but it decides about whole buckets.
+    questions.push({ ways, nearness: mass / least, weight: search.greatest });
+  });
+  return questions;
+}
+
+function opening(candidate: Candidate, i: number): Change {
+  return { bucket: i, to: candidate.canEmpty && candidate.most <= 0 ? 'emptied' : 'open' };
+}
+
+function fitsCount(subset: Subset, taken: Float64Array): boolean {
+  let opened = 0;
+  for (const mass of taken) if (mass > NOTHING) opened += 1;
+  return opened <= subset.search.problem.maximumBuckets;
+}
+
+/** What would be left is too little to keep. */
+function isInGap({ canEmpty, most, usable }: Candidate, mass: number): boolean {
+  return canEmpty && mass > Math.max(most, 0) + NOTHING && mass < usable - NOTHING;
+}
+
+/** Questions of which both answers are tried out before one is chosen. */
+const TRIED = 8;
+
+/**
+ * The subsets that follow: of the question whose answers lower the bound most.
+ * @param cutoff mg: bounds are not sought below it
+ */
+export function branch(subset: Subset, node: Node, questions: Question[], cutoff: number, scratch: Subset): Node[] {
+  questions.sort((a, b) => b.weight - a.weight);
+  let chosen: Node[] | undefined;
+  let most = -Infinity;
+  for (const { ways } of questions.slice(0, TRIED)) {
+    let product = 1;
+    const found: Node[] = [];
+    for (const way of ways) {
+      scratch.copyFrom(subset);
+      scratch.change(way);
+      scratch.solve(cutoff);
+      const child = scratch.node;
+      product *= Math.max(NOTHING, node.bound.value - child.bound.value);
+      found.push({ ...child, depth: node.depth + 1 });
+    }
+    const open = found.filter((child) => child.bound.value > cutoff);
+    if (open.length < 2) return found;
+    if (product <= most) continue;
+    most = product;
+    chosen = found;
   }
-  const j = undecidedFresh(search, relaxed);
-  if (j === -1) return [];
-  return (['none', 'some'] as const).map((way) => ({ ...decisions, fresh: replaced(decisions.fresh, j, way) }));
-}
-
-export function replaced<T>(list: readonly T[], at: number, by: T): T[] {
-  return list.map((entry, n) => (n === at ? by : entry));
-}
-
-/** A candidate that is taken in part although that is not settled; the one farthest from 0 and from all. */
-function undecidedBucket(search: Search, { certificate, taken }: Relaxed): number {
-  let at = -1;
-  let most = 0;
-  search.candidates.forEach(({ canEmpty, usable, most: upper }, n) => {
-    if (certificate.decisions.buckets[n] !== 'free') return;
-    const all = canEmpty ? usable : upper;
-    const mass = taken[n] as number;
-    if (mass < EPSILON || mass > all - EPSILON) return;
-    const open = Math.min(mass, all - mass);
-    if (open > most) {
-      most = open;
-      at = n;
-    }
-  });
-  return at;
-}
-
-/** A component whose fresh ink would be more than nothing and too little to weigh; −1 when a filling exists. */
-export function undecidedFresh(
-  search: Search,
-  relaxed: Pick<Relaxed, 'certificate' | 'held' | 'batch' | 'taken'>,
-): number {
-  const { fresh } = relaxed.certificate.decisions;
-  const reused = relaxed.taken.reduce((sum, mass) => sum + mass, 0);
-  const windows = search.components.map((_, j) => windowOf(search, fresh[j], relaxed, j));
-  const between = farthest(windows, ({ low, high, least }) =>
-    low > EPSILON && high < least - EPSILON ? Math.min(low, least - high) : 0,
-  );
-  if (between !== -1) return between;
-  const room = relaxed.batch - reused;
-  const needed = windows.reduce((sum, { low, least }) => sum + (low > EPSILON ? Math.max(low, least) : 0), 0);
-  if (needed > room + EPSILON)
-    return farthest(windows, ({ low, least }) => (low > EPSILON ? Math.max(0, least - low) : 0));
-  const possible = windows.reduce((sum, { high, least }) => sum + (high >= least - EPSILON ? Math.max(0, high) : 0), 0);
-  if (possible < room - EPSILON) return farthest(windows, ({ high, least }) => (high < least ? high : 0));
-  return -1;
-}
-
-interface FreshWindow {
-  low: number;
-  high: number;
-  least: number;
-}
-
-function windowOf(
-  search: Search,
-  decision: Fresh | undefined,
-  { held, batch }: Pick<Relaxed, 'held' | 'batch'>,
-  j: number,
-): FreshWindow {
-  if (decision === 'none' || search.target[j] === 0) return { low: 0, high: 0, least: 0 };
-  const edge = (ppb: Float64Array) => (batch * (ppb[j] as number)) / WHOLE - (held[j] as number);
-  const least = search.leastFresh[j] as number;
-  if (decision === 'some') return { low: Math.max(least, edge(search.lower)), high: edge(search.upper), least: 0 };
-  return { low: edge(search.lower), high: edge(search.upper), least };
-}
-
-function farthest(windows: readonly FreshWindow[], by: (window: FreshWindow) => number): number {
-  let at = -1;
-  let most = EPSILON;
-  windows.forEach((window, j) => {
-    const distance = by(window);
-    if (distance > most) {
-      most = distance;
-      at = j;
-    }
-  });
-  return at;
+  return chosen ?? [];
 }

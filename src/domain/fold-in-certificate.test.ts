@@ -4,8 +4,9 @@ import type { FoldInProblem } from './fold-in.ts';
 import { type Certificate, boundOf } from './fold-in-bound.ts';
 import { prepareSearch } from './fold-in-candidates.ts';
 import { certify } from './fold-in-certificate.ts';
-import { relax } from './fold-in-relaxation.ts';
-import type { Decisions } from './fold-in-rows.ts';
+import type { Decision } from './fold-in-decisions.ts';
+import { relaxationOf } from './fold-in-program.ts';
+import { Subset } from './fold-in-subset.ts';
 import type { Milligrams } from './mass.ts';
 
 const mg = (grams: number) => Math.round(grams * 1000) as Milligrams;
@@ -31,35 +32,46 @@ const problem: FoldInProblem = {
   maximumBuckets: 1,
   worthOpening: mg(0),
 };
-const search = prepareSearch(problem);
-const open: Decisions = { buckets: search.candidates.map(() => 'free'), fresh: search.components.map(() => 'free') };
+/** The bound at the relaxation's optimum, in floating point and exactly, and that of any other multipliers. */
+function relax(given: FoldInProblem, buckets: readonly Decision[] = ['free', 'free']) {
+  const search = prepareSearch(given);
+  const relaxation = relaxationOf(search);
+  const subset = new Subset({ search, relaxation });
+  subset.decide({ buckets, fresh: search.components.map(() => 'free') });
+  subset.solve();
+  const { certificate } = subset.node;
+  const exact = (other: Certificate) => certify(search, relaxation, other);
+  const floating = (other: Certificate) => boundOf(search, relaxation, other).value;
+  const times = (factor: number) => ({ ...certificate, multipliers: certificate.multipliers.map((pi) => pi * factor) });
+  return { certificate, exact, floating, times };
+}
 
 describe('the bound of a certificate', () => {
   test('is the optimum where the relaxation is tight: half of the batch from the deep tub', () => {
-    const relaxed = relax(search, open, []);
-    expect(certify(search, relaxed.certificate)).toBe(mg(500));
-    expect(relaxed.bound.value).toBeCloseTo(mg(500), 3);
+    const { certificate, exact, floating } = relax(problem);
+    expect(exact(certificate)).toBe(mg(500));
+    expect(floating(certificate)).toBeCloseTo(mg(500), 3);
   });
 
   test('holds with any multipliers, only worse', () => {
-    const { certificate } = relax(search, open, []);
-    for (const factor of [0, 0.3, 2, 17]) {
-      const other: Certificate = { ...certificate, multipliers: certificate.multipliers.map((pi) => pi * factor) };
-      expect(certify(search, other)).toBeGreaterThanOrEqual(mg(500));
-      expect(Math.abs(certify(search, other) - boundOf(search, other).value)).toBeLessThanOrEqual(1);
+    const { exact, floating, times } = relax({ ...problem, maximumBuckets: 2 });
+    const best = exact(times(1));
+    for (const factor of [-3, 0, 0.3, 2, 17]) {
+      expect(exact(times(factor))).toBeGreaterThanOrEqual(best);
+      expect(Math.abs(exact(times(factor)) - floating(times(factor)))).toBeLessThanOrEqual(1);
     }
   });
 
   test('without multipliers is all that the best tub can give', () => {
-    const { certificate } = relax(search, open, []);
-    const none: Certificate = { ...certificate, multipliers: certificate.multipliers.map(() => 0) };
     // What the cap lets in of the deep tub is the first bound there is: 500 g.
-    expect(certify(search, none)).toBe(mg(500));
-    expect(certify(prepareSearch({ ...problem, maximumBuckets: 2 }), none)).toBe(mg(800));
+    const one = relax(problem);
+    expect(one.exact(one.times(0))).toBe(mg(500));
+    const two = relax({ ...problem, maximumBuckets: 2 });
+    expect(two.exact(two.times(0))).toBe(mg(800));
   });
 
   test('a closed tub adds nothing', () => {
-    const closed: Decisions = { ...open, buckets: ['closed', 'free'] };
-    expect(certify(search, relax(search, closed, []).certificate)).toBe(mg(300));
+    const { certificate, exact } = relax(problem, ['closed', 'free']);
+    expect(exact(certificate)).toBe(mg(300));
   });
 });

@@ -1,67 +1,82 @@
 import type { Search } from './fold-in-candidates.ts';
 import type { Certificate } from './fold-in-bound.ts';
+import { type Decision, type Fresh, isOpened } from './fold-in-decisions.ts';
+import { type Relaxation, type Row, deviationIn } from './fold-in-program.ts';
 
-/** Multipliers are taken as whole numbers of 1/SCALE: any π ≥ 0 gives a valid bound, so rounding them loses no proof. */
+/** Multipliers are taken as whole numbers of 1/SCALE: any multipliers give a bound, so rounding them loses no proof. */
 const SCALE = 2n ** 34n;
 const PPB = 10n ** 9n;
 const UNIT = SCALE * PPB;
 
 /**
- * The bound of a certificate in BigInt, rounded up to whole mg: R ≤ π·b + Σ of the K greatest u·max(0, v − π·r) − κ.
+ * The bound of a certificate in BigInt, rounded up to whole mg: for any multipliers π the objective is at most
+ * π·b + Σ over slacks and deviations of the better end of their range + Σ of the K greatest scores of buckets.
  * Shares no figure with the floating-point search but the multipliers.
  */
-export function certify(search: Search, { decisions, rows, multipliers }: Certificate): number {
+export function certify(search: Search, { rows, deviating }: Relaxation, certificate: Certificate): number {
   const { problem } = search;
-  const ranged = search.greatest > search.least;
-  const prices = new Map<string, bigint>();
-  let each = 0n;
-  let ofBatch = ranged ? -UNIT : 0n;
-  let value = ofBatch * BigInt(search.least);
-  rows.forEach((row, n) => {
-    const pi = BigInt(Math.max(0, Math.round((multipliers[n] as number) * Number(SCALE))));
-    if (pi === 0n) return;
-    search.components.forEach((id, j) => {
-      const weight = row.weights[j] as number;
-      if (weight !== 0) prices.set(id, (prices.get(id) ?? 0n) + pi * BigInt(weight));
-    });
-    each += pi * BigInt(row.each);
-    value += pi * (BigInt(search.least) * BigInt(row.ppb) - BigInt(row.reserve) * PPB);
+  const multipliers = Array.from(certificate.multipliers, (pi) => BigInt(Math.round(pi * Number(SCALE))));
+  const least = BigInt(search.least);
+  const greatest = BigInt(search.greatest);
+  let value = greatest > least ? -UNIT * least : 0n;
+  let ofBatch = -UNIT;
+  rows.forEach((row, r) => {
+    const pi = multipliers[r] as bigint;
+    const slack = slackRange(search, row, certificate.decisions.fresh[row.component]);
+    value += pi * BigInt(row.ppb) * least - pi * (pi > 0n ? slack.least : slack.most);
     ofBatch += pi * BigInt(row.ppb);
   });
-  if (ofBatch > 0n) value += BigInt(search.greatest - search.least) * ofBatch;
-  const open: bigint[] = [];
-  search.candidates.forEach((candidate, n) => {
-    const decision = decisions.buckets[n];
-    if (decision === 'closed') return;
-    const gain = gainOf(problem.buckets[candidate.index]?.composition, prices, each);
-    const score = scoreOf(search, n, decision, gain) - BigInt(problem.worthOpening) * UNIT;
-    if (decision === 'free') open.push(score);
-    else value += score;
-  });
-  const opened = decisions.buckets.filter((decision) => decision === 'emptied' || decision === 'partial').length;
-  open.sort((a, b) => (a < b ? 1 : a > b ? -1 : 0));
-  for (const score of open.slice(0, Math.max(0, problem.maximumBuckets - opened))) if (score > 0n) value += score;
+  if (ofBatch > 0n) value += (greatest - least) * ofBatch;
+  for (const j of deviating) {
+    const gain = rows.reduce((sum, row, r) => sum - (multipliers[r] as bigint) * BigInt(deviationIn(row, j)), 0n);
+    const edge = BigInt((gain > 0n ? search.upper[j] : search.lower[j]) as number) - BigInt(search.target[j] as number);
+    value += gain * edge * greatest;
+  }
+  const { opened, free } = scoresOf(search, rows, multipliers, certificate.decisions.buckets);
+  for (const score of opened) value += score;
+  free.sort((a, b) => (a < b ? 1 : a > b ? -1 : 0));
+  for (const score of free.slice(0, Math.max(0, problem.maximumBuckets - opened.length))) value += score;
   return Number(value >= 0n ? (value + UNIT - 1n) / UNIT : value / UNIT);
 }
 
-/** v − π·r for each mg, in UNIT. */
-function gainOf(
-  composition: ReadonlyMap<string, number> | undefined,
-  prices: ReadonlyMap<string, bigint>,
-  each: bigint,
-): bigint {
-  let gain = UNIT - each * PPB;
-  for (const [id, share] of composition ?? []) gain -= (prices.get(id) ?? 0n) * BigInt(share);
-  return gain;
+/** mg·ppb between which a slack lies. */
+function slackRange(search: Search, row: Row, fresh: Fresh | undefined): { least: bigint; most: bigint } {
+  const most = BigInt(row.most) * BigInt(search.greatest);
+  if (row.kind !== 'fresh' || fresh === 'free') return { least: 0n, most };
+  if (fresh === 'none') return { least: 0n, most: 0n };
+  const least = BigInt(search.leastFresh[row.component] as number) * PPB;
+  return { least, most: most > least ? most : least };
 }
 
-function scoreOf(search: Search, n: number, decision: string | undefined, gain: bigint): bigint {
-  const candidate = search.candidates[n];
-  if (candidate === undefined) return 0n;
-  const emptied = gain * BigInt(candidate.usable);
-  const partly = gain * BigInt(gain > 0n ? candidate.most : search.minimum);
-  if (decision === 'emptied') return emptied;
-  if (decision === 'partial') return partly;
-  const ways = [...(candidate.canEmpty ? [emptied] : []), ...(candidate.most >= search.minimum ? [partly] : [])];
-  return ways.reduce((most, way) => (way > most ? way : most), 0n);
+/** What opened buckets add, and what those add that may still be opened, where that is more than nothing. */
+function scoresOf(search: Search, rows: readonly Row[], multipliers: readonly bigint[], buckets: readonly Decision[]) {
+  const opened: bigint[] = [];
+  const free: bigint[] = [];
+  search.candidates.forEach((candidate, i) => {
+    const decision = buckets[i] as Decision;
+    if (decision === 'closed') return;
+    const composition = search.problem.buckets[candidate.index]?.composition ?? new Map<string, number>();
+    let gain = UNIT;
+    for (const [id, share] of composition) {
+      const j = search.components.indexOf(id);
+      rows.forEach((row, r) => {
+        const counts = row.kind === 'sum' ? search.target[j] === 0 : row.component === j && isOfComponent(row);
+        if (counts) gain -= (multipliers[r] as bigint) * BigInt(share);
+      });
+    }
+    const emptied = gain * BigInt(candidate.usable);
+    const partly = gain * BigInt(gain > 0n ? candidate.most : search.minimum);
+    const ways: bigint[] = [];
+    if (decision === 'emptied' || (decision !== 'partial' && candidate.canEmpty)) ways.push(emptied);
+    if (decision !== 'emptied' && candidate.most >= search.minimum) ways.push(partly);
+    if (ways.length === 0) return;
+    const score = ways.reduce((a, b) => (a > b ? a : b)) - BigInt(search.problem.worthOpening) * UNIT;
+    if (isOpened(decision)) opened.push(score);
+    else if (score > 0n) free.push(score);
+  });
+  return { opened, free };
+}
+
+function isOfComponent({ kind }: Row): boolean {
+  return kind === 'fresh' || kind === 'foreign';
 }

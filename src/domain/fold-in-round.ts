@@ -1,7 +1,7 @@
 import { contentsOf, fillPot } from './fill-pot.ts';
 import type { FoldInPlan } from './fold-in.ts';
 import type { Candidate, Search } from './fold-in-candidates.ts';
-import type { Fresh } from './fold-in-rows.ts';
+import type { Fresh } from './fold-in-decisions.ts';
 import { type Milligrams, WHOLE } from './mass.ts';
 import { verifyPlan } from './verify-plan.ts';
 

@@ -1,0 +1,121 @@
+import { EPSILON, Tableau } from './tableau.ts';
+
+export type Outcome = 'optimal' | 'infeasible' | 'cut';
+
+/** By how much a bound may be passed. */
+const FEASIBLE = 1e-9;
+const MOST_PIVOTS = 400;
+
+/**
+ * Bounded dual simplex. Since all bounds are finite, any basis is dual feasible once each column outside it stands at
+ * the right bound: a change of bounds goes on from the last optimum. The objective falls to the optimum, so that it is
+ * a bound at each step. Floating point: it steers a search, it never proves.
+ */
+export class DualSimplex extends Tableau {
+  /** The row that cannot be kept, when infeasible, and on which side. */
+  private broken = -1;
+  private brokenBelow = false;
+
+  /** On to the optimum; 'cut' as soon as the objective is below `cutoff`. */
+  solve(cutoff = -Infinity): Outcome {
+    for (let n = 0; n < MOST_PIVOTS; n++) {
+      const r = this.mostBroken();
+      if (r === -1) return 'optimal';
+      if (this.objective < cutoff) return 'cut';
+      const variable = this.inside[r] as number;
+      const below = (this.values[r] as number) < (this.lower[variable] as number);
+      const before = this.objective;
+      const q = this.entering(r, below);
+      if (q === -1) {
+        // What passed to its other bound on the way does not belong to the multipliers.
+        this.objective = before;
+        this.broken = r;
+        this.brokenBelow = below;
+        return 'infeasible';
+      }
+      this.exchange(r, q, !below);
+    }
+    return 'cut';
+  }
+
+  private mostBroken(): number {
+    let found = -1;
+    let most = FEASIBLE;
+    for (let r = 0; r < this.rows; r++) {
+      const variable = this.inside[r] as number;
+      const value = this.values[r] as number;
+      const broken = Math.max((this.lower[variable] as number) - value, value - (this.upper[variable] as number));
+      if (broken > most) {
+        most = broken;
+        found = r;
+      }
+    }
+    return found;
+  }
+
+  /** The column that comes in; columns that would pass their other bound on the way stand there instead. */
+  private entering(r: number, below: boolean): number {
+    const variable = this.inside[r] as number;
+    const at = r * this.room;
+    this.passed.length = 0;
+    for (;;) {
+      const value = this.values[r] as number;
+      const missing = below ? (this.lower[variable] as number) - value : value - (this.upper[variable] as number);
+      const q = this.leastRatio(at, below);
+      if (q === -1) return -1;
+      const column = this.columns[q] as number;
+      const range = (this.upper[column] as number) - (this.lower[column] as number);
+      if (Math.abs(this.cells[at + q] as number) * range >= missing - FEASIBLE) return q;
+      const upwards = this.atUpper[q] === 0;
+      this.atUpper[q] = Number(upwards);
+      this.shift(q, upwards ? range : -range);
+      this.passed.push(q);
+    }
+  }
+
+  /** Columns that passed to their other bound in this step: their costs turn with the pivot. */
+  private readonly passed: number[] = [];
+
+  private leastRatio(at: number, below: boolean): number {
+    let found = -1;
+    let least = Infinity;
+    let size = 0;
+    for (let k = 0; k < this.outside; k++) {
+      const cell = this.cells[at + k] as number;
+      const up = this.atUpper[k] === 0;
+      // Going up lowers the row's variable where the cell is positive.
+      const helps = below === up ? cell < -EPSILON : cell > EPSILON;
+      if (!helps) continue;
+      const column = this.columns[k] as number;
+      if (this.lower[column] === this.upper[column] || this.passed.includes(k)) continue;
+      const ratio = Math.abs(this.costs[k] as number) / Math.abs(cell);
+      if (ratio < least - 1e-12 || (ratio <= least + 1e-12 && Math.abs(cell) > size)) {
+        least = Math.min(least, ratio);
+        size = Math.abs(cell);
+        found = k;
+      }
+    }
+    return found;
+  }
+
+  /** Multiplier of a row, by its slack: any multipliers give a bound. */
+  multiplier(slack: number): number {
+    const place = this.places[slack] as number;
+    return place < 0 ? 0 : 0 - (this.costs[place] as number);
+  }
+
+  /** When infeasible: what may be added to the multipliers, any number of times, each time lowering the bound. */
+  ray(slack: number): number {
+    const sign = this.brokenBelow ? 1 : -1;
+    const place = this.places[slack] as number;
+    if (place < 0) return -1 - place === this.broken ? sign : 0;
+    return sign * (this.cells[this.broken * this.room + place] as number);
+  }
+
+  /** When infeasible: by how much a bound cannot be kept. */
+  get brokenBy(): number {
+    const variable = this.inside[this.broken] as number;
+    const value = this.values[this.broken] as number;
+    return Math.max((this.lower[variable] as number) - value, value - (this.upper[variable] as number));
+  }
+}

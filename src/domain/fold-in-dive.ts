@@ -1,0 +1,36 @@
+import { questionsOf } from './fold-in-branch.ts';
+import type { Change } from './fold-in-decisions.ts';
+import { type Rounded, roundPlan } from './fold-in-round.ts';
+import type { Subset } from './fold-in-subset.ts';
+
+const MOST_STEPS = 60;
+
+/** A plan near a relaxation: what is nearest to being decided is decided, again and again; undefined when none above `cutoff` (mg). */
+export function planNear(from: Subset, cutoff: number, subset: Subset, backup: Subset): Rounded | undefined {
+  subset.copyFrom(from);
+  for (let step = 0; step < MOST_STEPS; step++) {
+    const questions = questionsOf(subset);
+    if (questions.length === 0) return round(subset);
+    const nearest = questions.reduce((a, b) => (certainty(b.nearness) > certainty(a.nearness) ? b : a));
+    const ways = nearest.nearness >= 0.5 ? nearest.ways : nearest.ways.toReversed();
+    backup.copyFrom(subset);
+    if (!ways.some((way) => tryWay(subset, backup, way, cutoff))) return undefined;
+  }
+  return undefined;
+}
+
+function tryWay(subset: Subset, backup: Subset, way: Change, cutoff: number): boolean {
+  subset.copyFrom(backup);
+  subset.change(way);
+  return subset.solve(cutoff) === 'optimal' && subset.objective > cutoff;
+}
+
+/** Where many are in part, the one that gives most is opened first: the others then go as the count asks. */
+function certainty(nearness: number): number {
+  return nearness >= 0.5 ? nearness : 0.5 - nearness;
+}
+
+function round(subset: Subset): Rounded | undefined {
+  const { search, taken, batch, decisions } = subset;
+  return roundPlan(search, { taken, batch, fresh: decisions.fresh });
+}

@@ -1,0 +1,154 @@
+import { DualSimplex, type Outcome } from './dual-simplex.ts';
+import { type Bound, type Certificate, boundOf, slackLimits } from './fold-in-bound.ts';
+import type { Candidate, Search } from './fold-in-candidates.ts';
+import { type Change, type Decision, type Decisions, isOpened, limitsOf, withChange } from './fold-in-decisions.ts';
+import type { Relaxation, Row } from './fold-in-program.ts';
+
+/** A subset of all plans: what is decided of them, and a bound of their objectives. */
+export interface Node {
+  certificate: Certificate;
+  bound: Bound;
+  depth: number;
+}
+
+/** A bound that no batch has, in batches: what cannot be is as good as that. */
+const HOPELESS = -3;
+
+/** The linear relaxation of a subset of plans; decisions are changes of bounds, so each goes on from the last optimum. */
+export class Subset {
+  readonly search: Search;
+  readonly relaxation: Relaxation;
+  private readonly simplex: DualSimplex;
+  decisions: Decisions;
+  private opened = 0;
+  private outcome: Outcome = 'optimal';
+
+  /** Where nothing is decided, or a copy. */
+  constructor(of: { search: Search; relaxation: Relaxation } | Subset) {
+    this.search = of.search;
+    this.relaxation = of.relaxation;
+    this.simplex = new DualSimplex(of.relaxation.program, of.search.candidates.length);
+    this.decisions = {
+      buckets: of.search.candidates.map((): Decision => 'free'),
+      fresh: of.search.components.map(() => 'free'),
+    };
+    if (of instanceof Subset) this.copyFrom(of);
+  }
+
+  copyFrom(other: Subset): void {
+    this.simplex.copyFrom(other.simplex);
+    this.decisions = other.decisions;
+    this.opened = other.opened;
+    this.outcome = other.outcome;
+  }
+
+  /** Decides what `decisions` have decided beyond these. */
+  decide(decisions: Decisions): void {
+    decisions.buckets.forEach((to, bucket) => this.decisions.buckets[bucket] !== to && this.change({ bucket, to }));
+    decisions.fresh.forEach(
+      (to, component) => this.decisions.fresh[component] !== to && this.change({ component, to }),
+    );
+  }
+
+  change(change: Change): void {
+    if ('bucket' in change) this.changeBucket(change.bucket, change.to);
+    else this.changeFresh(change.component, change.to);
+    this.decisions = withChange(this.decisions, change);
+  }
+
+  private changeBucket(i: number, to: Decision): void {
+    const { simplex, search, relaxation } = this;
+    if (!isOpened(this.decisions.buckets[i])) {
+      simplex.setBounds(i, 0, 0);
+      if (to === 'closed') return;
+      this.open(i);
+    }
+    const { least, most } = limitsOf(search.candidates[i] as Candidate, to, search.minimum);
+    simplex.setBounds(relaxation.firstVariant + i, least / search.greatest, most / search.greatest);
+  }
+
+  /** An opened bucket counts as one and costs its opening whatever it gives: its mass alone is left in the program. */
+  private open(i: number): void {
+    const { simplex, search, relaxation } = this;
+    const { countSlack, program } = relaxation;
+    const width = program.gains.length;
+    const entry = countSlack === -1 ? 0 : (program.matrix[relaxation.rows.length * width + i] as number);
+    const without = countSlack === -1 ? undefined : { slack: countSlack, entry };
+    simplex.addVariant(relaxation.firstVariant + i, i, without, 1 - (program.gains[i] as number));
+    this.opened += 1;
+    if (countSlack !== -1) simplex.setBounds(countSlack, this.opened, search.problem.maximumBuckets);
+  }
+
+  private changeFresh(j: number, to: Decisions['fresh'][number]): void {
+    const { search, relaxation } = this;
+    const { least, most } = slackLimits(search, relaxation.rows[j] as Row, to);
+    this.simplex.setBounds(relaxation.firstSlack + j, least / search.greatest, most / search.greatest);
+  }
+
+  /** @param cutoff mg: an objective below which nothing is sought */
+  solve(cutoff = -Infinity): Outcome {
+    const { search } = this;
+    if (this.opened > search.problem.maximumBuckets) return (this.outcome = 'infeasible');
+    this.outcome = this.simplex.solve((cutoff + this.fixed) / search.greatest);
+    return this.outcome;
+  }
+
+  /** mg that the objective is less than the program's: what the opened cost, and the least batch in a range. */
+  private get fixed(): number {
+    return this.opened * this.search.problem.worthOpening + (this.relaxation.isRanged ? this.search.least : 0);
+  }
+
+  /** mg, of the linear relaxation. */
+  get objective(): number {
+    return this.simplex.objective * this.search.greatest - this.fixed;
+  }
+
+  /** mg that come from each bucket. */
+  get taken(): Float64Array {
+    const { simplex, search, relaxation } = this;
+    const { buckets } = this.decisions;
+    const taken = new Float64Array(buckets.length);
+    for (let i = 0; i < taken.length; i++) {
+      const decision = buckets[i];
+      if (decision === 'closed') continue;
+      taken[i] = simplex.value(decision === 'free' ? i : relaxation.firstVariant + i) * search.greatest;
+    }
+    return taken;
+  }
+
+  /** mg of fresh ink of a component; of a foreign one the room that is left for it. */
+  freshOf(j: number): number {
+    return this.simplex.value(this.relaxation.firstSlack + j) * this.search.greatest;
+  }
+
+  /** mg */
+  get batch(): number {
+    if (!this.relaxation.isRanged) return this.search.least;
+    return this.search.least + this.simplex.value(this.relaxation.firstSlack - 1) * this.search.greatest;
+  }
+
+  /** Whether all buckets that give something count as opened, each in full. */
+  get isCountFull(): boolean {
+    const { countSlack } = this.relaxation;
+    return countSlack !== -1 && this.simplex.value(countSlack) <= this.opened + 1e-7;
+  }
+
+  /** With the bound that its multipliers prove. */
+  get node(): Node {
+    const certificate = { decisions: this.decisions, multipliers: this.multipliers() };
+    const bound = boundOf(this.search, this.relaxation, certificate);
+    return { certificate, bound, depth: this.opened };
+  }
+
+  private multipliers(): Float64Array {
+    const { rows, firstSlack } = this.relaxation;
+    const found = new Float64Array(rows.length);
+    for (let r = 0; r < found.length; r++) found[r] = this.simplex.multiplier(firstSlack + r);
+    if (this.outcome !== 'infeasible' || this.opened > this.search.problem.maximumBuckets) return found;
+    const times = (this.simplex.objective - HOPELESS) / this.simplex.brokenBy;
+    return found.map((pi, r) => pi + times * this.simplex.ray(firstSlack + r));
+  }
+}
+
+/** mg below which a mass is none. */
+export const NOTHING = 1e-3;
