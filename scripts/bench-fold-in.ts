@@ -1,52 +1,66 @@
-import { type FoldInPlan, foldInBuckets, verifyPlan } from '#domain/fold-in.ts';
-import type { Milligrams } from '#domain/mass.ts';
+import { type FoldInPlan, type FoldInProblem, foldInBuckets, verifyPlan } from '#domain/fold-in.ts';
+import { askHighs } from './bench/ask-highs.ts';
+import { foldInMip } from './bench/fold-in-mip.ts';
+import { asksOf, nameOf, SIZES, targetOf, warmUp } from './bench/fold-in-rows.ts';
 import { type Ask, makeShop } from './bench/fold-in-shop.ts';
+import { median, quantile } from './bench/quantile.ts';
 
-const SEEDS = Number(process.argv[2] ?? 20);
-const grams = (mass: number) => (mass * 1000) as Milligrams;
-
-const asks: Ask[] = [20, 120, 500].flatMap((buckets) =>
-  [false, true].flatMap((tolerance) =>
-    [2, 6].flatMap((maximumBuckets) =>
-      [0, 100].map((worth) => ({ buckets, tolerance, maximumBuckets, worthOpening: grams(worth) })),
-    ),
-  ),
-);
+const SEEDS = Number(process.argv[2] ?? 5);
+const HIGHS_SECONDS = 10;
 
 interface Run {
   ms: number;
   plan: FoldInPlan;
   verified: boolean;
+  highs: { ms: number; finished: boolean; agrees: boolean; difference: number };
 }
 
-function runOne(ask: Ask, seed: number): Run {
+async function runOne(ask: Ask, seed: number): Promise<Run> {
   const problem = makeShop(seed, ask);
   const started = performance.now();
   const plan = foldInBuckets(problem);
-  return { ms: performance.now() - started, plan, verified: verifyPlan(problem, plan).ok };
+  const ms = performance.now() - started;
+  return { ms, plan, verified: verifyPlan(problem, plan).ok, highs: await compare(problem, plan) };
 }
 
-function quantile(values: readonly number[], q: number): string {
-  const sorted = [...values].sort((a, b) => a - b);
-  return (sorted[Math.min(sorted.length - 1, Math.floor(q * sorted.length))] ?? Number.NaN).toFixed(1);
+/** Equal within 10⁻⁶ and a step of the scale for each bucket that is opened (one for the fresh ink). */
+async function compare(problem: FoldInProblem, plan: FoldInPlan): Promise<Run['highs']> {
+  const { ms, finished, objective } = await askHighs(foldInMip(problem), HIGHS_SECONDS);
+  const difference = plan.objective - objective * 1000;
+  const rounding = problem.readability * (plan.fromBuckets.length + 1);
+  const isBelow = plan.objectiveBound < objective * 1000 * (1 - 1e-6) - 1;
+  const agrees = Math.abs(difference) <= Math.abs(plan.objective) * 1e-6 + rounding && !isBelow;
+  return { ms, finished, agrees: !finished || agrees, difference };
 }
 
 function report(ask: Ask, runs: readonly Run[]): void {
-  const count = (status: FoldInPlan['status']) => runs.filter((run) => run.plan.status === status).length;
   const times = runs.map((run) => run.ms);
-  const gaps = runs.map(({ plan }) => plan.objectiveBound - plan.objective);
+  const p95 = quantile(times, 0.95);
+  const target = targetOf(ask);
+  const verdict = target === undefined ? '' : ` (target ${target} ms: ${p95 <= target ? 'met' : 'missed'})`;
+  const proven = runs.filter(({ plan }) => plan.status !== 'gap').length;
+  const ratio = median(runs.map((run) => run.highs.ms / run.ms));
   console.log(
-    `N=${ask.buckets} ${ask.tolerance ? 'tolerance  ' : 'same recipe'} K=${ask.maximumBuckets} κ=${ask.worthOpening / 1000} g: ` +
-      `p50 ${quantile(times, 0.5)} ms, p95 ${quantile(times, 0.95)} ms, most ${quantile(times, 1)} ms; ` +
-      `best ${count('best')}, gap ${count('gap')} (most ${(Math.max(...gaps) / 1000).toFixed(2)} g), none ${count('none')}; ` +
-      `verified ${runs.filter((run) => run.verified).length} of ${runs.length}`,
+    `${nameOf(ask)}: p50 ${median(times).toFixed(1)} ms, p95 ${p95.toFixed(1)} ms${verdict}; ` +
+      `proven ${proven}/${runs.length}, verified ${runs.filter((run) => run.verified).length}/${runs.length}; ` +
+      `HiGHS p50 ${median(runs.map((run) => run.highs.ms)).toFixed(0)} ms, ${ratio.toFixed(0)} times as long`,
   );
+  for (const [n, { highs }] of runs.entries())
+    if (!highs.agrees) console.log(`  seed ${n + 1}: ${(highs.difference / 1000).toFixed(3)} g off HiGHS`);
 }
 
-console.log(`Fold-in, ${SEEDS} seeded shops a row, Node ${process.version}`);
-for (let warm = 0; warm < 10; warm++) runOne(asks[warm % asks.length] as Ask, 1000 + warm);
-for (const ask of asks)
-  report(
-    ask,
-    Array.from({ length: SEEDS }, (_, seed) => runOne(ask, seed + 1)),
-  );
+console.log(`Fold-in beside HiGHS (WebAssembly, gap 10⁻⁹, ${HIGHS_SECONDS} s), ${SEEDS} seeded shops a row, Node ${process.version}`);
+warmUp((problem) => foldInBuckets(problem));
+const all: Run[] = [];
+for (const ask of SIZES.flatMap(asksOf)) {
+  const runs: Run[] = [];
+  for (let seed = 1; seed <= SEEDS; seed++) runs.push(await runOne(ask, seed));
+  report(ask, runs);
+  all.push(...runs);
+}
+const finished = all.filter((run) => run.highs.finished);
+const agreeing = finished.filter((run) => run.highs.agrees).length;
+const ratio = median(all.map((run) => run.highs.ms / run.ms));
+console.log(`HiGHS finished ${finished.length} of ${all.length} (at least 95 %: ${finished.length >= 0.95 * all.length ? 'met' : 'missed'})`);
+console.log(`Equal objective on ${agreeing} of those ${finished.length}: ${agreeing === finished.length ? 'met' : 'missed'}`);
+console.log(`HiGHS takes ${ratio.toFixed(0)} times as long, median of ${all.length} (at least 50: ${ratio >= 50 ? 'met' : 'missed'})`);

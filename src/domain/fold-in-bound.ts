@@ -23,8 +23,7 @@ export interface Bound {
  * + Σ of the K greatest scores of buckets. In floating point: steers, does not prove.
  */
 export function boundOf(search: Search, relaxation: Relaxation, { decisions, multipliers }: Certificate): Bound {
-  const { rows, program, deviating } = relaxation;
-  const width = program.gains.length;
+  const { rows, deviating } = relaxation;
   const range = search.greatest - search.least;
   let value = relaxation.isRanged ? -search.least : 0;
   let ofBatch = -1;
@@ -46,22 +45,33 @@ export function boundOf(search: Search, relaxation: Relaxation, { decisions, mul
     const edge = ((gain > 0 ? search.upper[j] : search.lower[j]) as number) - (search.target[j] as number);
     value += (gain * edge * search.greatest) / WHOLE;
   }
-  const scores = new Float64Array(search.candidates.length).fill(-Infinity);
+  const scores = gainsOf(relaxation, multipliers, search.candidates.length);
   let left = search.problem.maximumBuckets;
-  search.candidates.forEach((candidate, i) => {
+  for (let i = 0; i < scores.length; i++) {
     const decision = decisions.buckets[i] as Decision;
-    if (decision === 'closed') return;
-    let gain = 1;
-    for (let r = 0; r < rows.length; r++) {
-      gain -= (multipliers[r] as number) * (program.matrix[r * width + i] as number);
-    }
-    const score = scoreOf(candidate, decision, gain, search.minimum) - search.problem.worthOpening;
+    const candidate = search.candidates[i] as Candidate;
+    const score =
+      decision === 'closed'
+        ? -Infinity
+        : scoreOf(candidate, decision, scores[i] as number, search.minimum) - search.problem.worthOpening;
     scores[i] = score;
-    if (!isOpened(decision)) return;
+    if (!isOpened(decision)) continue;
     value += score;
     left -= 1;
-  });
+  }
   return { ...addGreatest(value, scores, decisions, left), scores };
+}
+
+/** What a mg of each candidate gains beside what its components are priced at. */
+function gainsOf({ program, rows }: Relaxation, multipliers: Float64Array, candidates: number): Float64Array {
+  const { matrix } = program;
+  const gains = new Float64Array(candidates).fill(1);
+  for (let r = 0, at = 0; r < rows.length; r++, at += program.gains.length) {
+    const pi = multipliers[r] as number;
+    if (pi === 0) continue;
+    for (let i = 0; i < candidates; i++) gains[i] = (gains[i] as number) - pi * (matrix[at + i] as number);
+  }
+  return gains;
 }
 
 /** mg between which a slack lies. */
@@ -82,9 +92,10 @@ function scoreOf({ canEmpty, usable, most }: Candidate, decision: Decision, gain
 function addGreatest(value: number, scores: Float64Array, { buckets }: Decisions, left: number): Omit<Bound, 'scores'> {
   if (left < 0) return { value: -Infinity, counted: 0 };
   const gained: number[] = [];
-  scores.forEach((score, i) => {
+  for (let i = 0; i < scores.length; i++) {
+    const score = scores[i] as number;
     if (score > 0 && buckets[i] === 'free') gained.push(score);
-  });
+  }
   gained.sort((a, b) => b - a);
   const counted = Math.min(gained.length, left);
   let sum = value;

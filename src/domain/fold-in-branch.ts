@@ -1,6 +1,7 @@
 import type { Candidate } from './fold-in-candidates.ts';
 import { type Change, type Decision, limitsOf, mostOf } from './fold-in-decisions.ts';
-import { NOTHING, type Node, type Subset } from './fold-in-subset.ts';
+import type { Certificate } from './fold-in-bound.ts';
+import { NOTHING, type Node, type Subset, nodeOf } from './fold-in-subset.ts';
 
 /** What keeps a relaxation from being a plan, and the ways to decide it: of a bucket or of a component's fresh ink. */
 export interface Question {
@@ -63,29 +64,29 @@ function isInGap({ canEmpty, most, usable }: Candidate, mass: number): boolean {
 const TRIED = 8;
 
 /**
- * The subsets that follow: of the question whose answers lower the bound most.
+ * The subsets that follow: of the question whose answers lower the relaxation most.
  * @param cutoff mg: bounds are not sought below it
  */
 export function branch(subset: Subset, node: Node, questions: Question[], cutoff: number, scratch: Subset): Node[] {
   questions.sort((a, b) => b.weight - a.weight);
-  let chosen: Node[] | undefined;
+  let chosen: Certificate[] = [];
   let most = -Infinity;
   for (const { ways } of questions.slice(0, TRIED)) {
     let product = 1;
-    const found: Node[] = [];
-    for (const way of ways) {
+    let open = 0;
+    const certificates = ways.map((way) => {
       scratch.copyFrom(subset);
       scratch.change(way);
-      scratch.solve(cutoff);
-      const child = scratch.node;
-      product *= Math.max(NOTHING, node.bound.value - child.bound.value);
-      found.push({ ...child, depth: node.depth + 1 });
-    }
-    const open = found.filter((child) => child.bound.value > cutoff);
-    if (open.length < 2) return found;
+      const isOpen = scratch.solve(cutoff) === 'optimal' && scratch.objective > cutoff;
+      open += Number(isOpen);
+      product *= Math.max(NOTHING, subset.objective - (isOpen ? scratch.objective : cutoff));
+      return scratch.certificate;
+    });
+    if (open < 2) product = Infinity;
     if (product <= most) continue;
     most = product;
-    chosen = found;
+    chosen = certificates;
+    if (open < 2) break;
   }
-  return chosen ?? [];
+  return chosen.map((certificate) => nodeOf(subset, certificate, node.depth + 1));
 }

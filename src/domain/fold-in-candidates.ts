@@ -52,8 +52,11 @@ export function prepareSearch(problem: FoldInProblem): Search {
 }
 
 function rowsOf(problem: FoldInProblem, kept: readonly Omit<Candidate, 'shares'>[]) {
-  const compositions = kept.map(({ index }) => problem.buckets[index]?.composition ?? new Map<string, number>());
-  const components = [...new Set([...problem.target.keys(), ...compositions.flatMap((of) => [...of.keys()])])];
+  const places = new Map<string, number>();
+  const place = (id: string) => void (places.has(id) || places.set(id, places.size));
+  for (const id of problem.target.keys()) place(id);
+  for (const { index } of kept) for (const id of compositionAt(problem, index).keys()) place(id);
+  const components = [...places.keys()];
   const of = (value: (id: string) => number) => Float64Array.from(components, value);
   const share = (id: string) => problem.target.get(id) ?? 0;
   const tau = (id: string) => problem.tolerance.get(id) ?? 0;
@@ -64,13 +67,18 @@ function rowsOf(problem: FoldInProblem, kept: readonly Omit<Candidate, 'shares'>
     lower: of((id) => Math.max(0, share(id) - tau(id))),
     upper: of((id) => share(id) + tau(id)),
     leastFresh: of((id) => Math.min(problem.minimumFresh, Math.floor((least * share(id)) / WHOLE))),
-    candidates: kept.map((candidate, n): Candidate => {
-      const shares = of((id) => (compositions[n]?.get(id) ?? 0) / WHOLE);
+    candidates: kept.map((candidate): Candidate => {
+      const shares = new Float64Array(components.length);
+      for (const [id, ppb] of compositionAt(problem, candidate.index)) shares[places.get(id) as number] = ppb / WHOLE;
       return { ...candidate, shares };
     }),
     least,
     greatest,
   };
+}
+
+function compositionAt(problem: FoldInProblem, index: number): ReadonlyMap<string, number> {
+  return problem.buckets[index]?.composition ?? new Map();
 }
 
 /** The most of a bucket that the batch takes: min over its components of M(t + τ)/r, rounded up to whole mg. */

@@ -39,7 +39,7 @@ function relax(given: FoldInProblem, buckets: readonly Decision[] = ['free', 'fr
   const subset = new Subset({ search, relaxation });
   subset.decide({ buckets, fresh: search.components.map(() => 'free') });
   subset.solve();
-  const { certificate } = subset.node;
+  const { certificate } = subset;
   const exact = (other: Certificate) => certify(search, relaxation, other);
   const floating = (other: Certificate) => boundOf(search, relaxation, other).value;
   const times = (factor: number) => ({ ...certificate, multipliers: certificate.multipliers.map((pi) => pi * factor) });

@@ -1,20 +1,22 @@
 import { questionsOf } from './fold-in-branch.ts';
 import type { Change } from './fold-in-decisions.ts';
 import { type Rounded, roundPlan } from './fold-in-round.ts';
-import type { Subset } from './fold-in-subset.ts';
+import { Subset } from './fold-in-subset.ts';
 
 const MOST_STEPS = 60;
 
 /** A plan near a relaxation: what is nearest to being decided is decided, again and again; undefined when none above `cutoff` (mg). */
-export function planNear(from: Subset, cutoff: number, subset: Subset, backup: Subset): Rounded | undefined {
-  subset.copyFrom(from);
+export function planNear(from: Subset, cutoff: number): Rounded | undefined {
+  let questions = questionsOf(from);
+  if (questions.length === 0) return round(from);
+  const [subset, backup] = [new Subset(from), new Subset(from)];
   for (let step = 0; step < MOST_STEPS; step++) {
-    const questions = questionsOf(subset);
-    if (questions.length === 0) return round(subset);
     const nearest = questions.reduce((a, b) => (certainty(b.nearness) > certainty(a.nearness) ? b : a));
     const ways = nearest.nearness >= 0.5 ? nearest.ways : nearest.ways.toReversed();
     backup.copyFrom(subset);
     if (!ways.some((way) => tryWay(subset, backup, way, cutoff))) return undefined;
+    questions = questionsOf(subset);
+    if (questions.length === 0) return round(subset);
   }
   return undefined;
 }

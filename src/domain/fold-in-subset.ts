@@ -1,8 +1,16 @@
 import { DualSimplex, type Outcome } from './dual-simplex.ts';
 import { type Bound, type Certificate, boundOf, slackLimits } from './fold-in-bound.ts';
 import type { Candidate, Search } from './fold-in-candidates.ts';
-import { type Change, type Decision, type Decisions, isOpened, limitsOf, withChange } from './fold-in-decisions.ts';
-import type { Relaxation, Row } from './fold-in-program.ts';
+import {
+  type Change,
+  type Decision,
+  type Decisions,
+  isOpened,
+  limitsOf,
+  startOf,
+  withChange,
+} from './fold-in-decisions.ts';
+import { type Relaxation, type Row, relaxationOf } from './fold-in-program.ts';
 
 /** A subset of all plans: what is decided of them, and a bound of their objectives. */
 export interface Node {
@@ -127,17 +135,8 @@ export class Subset {
     return this.search.least + this.simplex.value(this.relaxation.firstSlack - 1) * this.search.greatest;
   }
 
-  /** Whether all buckets that give something count as opened, each in full. */
-  get isCountFull(): boolean {
-    const { countSlack } = this.relaxation;
-    return countSlack !== -1 && this.simplex.value(countSlack) <= this.opened + 1e-7;
-  }
-
-  /** With the bound that its multipliers prove. */
-  get node(): Node {
-    const certificate = { decisions: this.decisions, multipliers: this.multipliers() };
-    const bound = boundOf(this.search, this.relaxation, certificate);
-    return { certificate, bound, depth: this.opened };
+  get certificate(): Certificate {
+    return { decisions: this.decisions, multipliers: this.multipliers() };
   }
 
   private multipliers(): Float64Array {
@@ -148,6 +147,19 @@ export class Subset {
     const times = (this.simplex.objective - HOPELESS) / this.simplex.brokenBy;
     return found.map((pi, r) => pi + times * this.simplex.ray(firstSlack + r));
   }
+}
+
+/** Where nothing is decided but the buckets that must be used, at its optimum. */
+export function rootOf(search: Search): Subset {
+  const root = new Subset({ search, relaxation: relaxationOf(search) });
+  root.decide(startOf(search));
+  root.solve();
+  return root;
+}
+
+/** With the bound that its multipliers prove. */
+export function nodeOf({ search, relaxation }: Subset, certificate: Certificate, depth: number): Node {
+  return { certificate, bound: boundOf(search, relaxation, certificate), depth };
 }
 
 /** mg below which a mass is none. */
