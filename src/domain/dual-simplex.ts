@@ -87,7 +87,8 @@ export class DualSimplex extends Tableau {
       const helps = below === up ? cell < -EPSILON : cell > EPSILON;
       if (!helps) continue;
       const column = this.columns[k] as number;
-      if (this.lower[column] === this.upper[column] || this.passed.includes(k)) continue;
+      if (this.lower[column] === this.upper[column]) continue;
+      if (this.passed.length > 0 && this.passed.includes(k)) continue;
       const ratio = Math.abs(this.costs[k] as number) / Math.abs(cell);
       if (ratio < least - 1e-12 || (ratio <= least + 1e-12 && Math.abs(cell) > size)) {
         least = Math.min(least, ratio);

@@ -10,7 +10,7 @@ import { type Node, Subset, nodeOf, rootOf } from './fold-in-subset.ts';
 import type { Milligrams } from './mass.ts';
 
 /** Nodes after which the best plan is taken with its gap: a second or two of a desk computer. */
-const MOST_NODES = 4000;
+const MOST_NODES = 6000;
 /** Bounds that are taken exactly; where more are tied, the floating one and its margin stand for them. */
 const MOST_EXACT = 200;
 const YIELD_EVERY = 10;

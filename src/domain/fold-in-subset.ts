@@ -67,9 +67,9 @@ export class Subset {
   private changeBucket(i: number, to: Decision): void {
     const { simplex, search, relaxation } = this;
     if (!isOpened(this.decisions.buckets[i])) {
+      if (to !== 'closed') this.open(i);
       simplex.setBounds(i, 0, 0);
       if (to === 'closed') return;
-      this.open(i);
     }
     const { least, most } = limitsOf(search.candidates[i] as Candidate, to, search.minimum);
     simplex.setBounds(relaxation.firstVariant + i, least / search.greatest, most / search.greatest);

@@ -12,6 +12,9 @@ export interface BoxedProgram {
 /** By how much an entry of the tableau must differ from 0 to count. */
 export const EPSILON = 1e-9;
 
+/** The place of a variable that stands outside the basis for good: its bounds are one, so its column is not kept. */
+const DROPPED = -(2 ** 31);
+
 /**
  * A dense tableau of the columns outside the basis; each of them stands at the bound that its cost asks for. Variables
  * are numbered: columns, slacks, then variants that are added later.
@@ -30,14 +33,16 @@ export class Tableau {
   protected readonly values: Float64Array;
   protected readonly lower: Float64Array;
   protected readonly upper: Float64Array;
-  /** Where a variable stands: its place outside the basis, or −1 − its row. */
+  /** Where a variable stands: its place outside the basis, −1 − its row, or DROPPED. */
   protected readonly places: Int32Array;
+  private readonly firstSlack: number;
   objective = 0;
 
   /** @param variants how many variables may be added later by `addVariant` */
   constructor(program: BoxedProgram, variants: number) {
     const n = program.gains.length;
     this.rows = program.right.length;
+    this.firstSlack = n;
     this.outside = n;
     this.room = n + Math.min(variants, 8);
     this.cells = new Float64Array(this.rows * this.room);
@@ -60,7 +65,7 @@ export class Tableau {
   /** Takes over the state of another one of the same program. */
   copyFrom(other: Tableau): void {
     if (this.room < other.outside) this.makeRoom(other.room);
-    if (this.room === other.room) this.cells.set(other.cells);
+    if (this.room === other.room && 2 * other.outside > other.room) this.cells.set(other.cells);
     else copyRows(other.cells, other.room, this.cells, this.room, other.outside);
     this.costs.set(other.costs.subarray(0, other.outside));
     this.columns.set(other.columns.subarray(0, other.outside));
@@ -89,6 +94,23 @@ export class Tableau {
     if (cost > 0) this.atUpper[k] = 1;
     else if (cost < 0) this.atUpper[k] = 0;
     this.shift(k, this.valueOutside(k) - before);
+    this.dropIfFixed(k);
+  }
+
+  /** Slacks are kept: they tell the multipliers. */
+  private dropIfFixed(k: number): void {
+    const variable = this.columns[k] as number;
+    const isSlack = variable >= this.firstSlack && variable < this.firstSlack + this.rows;
+    if (isSlack || this.lower[variable] !== this.upper[variable]) return;
+    const last = --this.outside;
+    this.places[variable] = DROPPED;
+    if (k === last) return;
+    const moved = this.columns[last] as number;
+    this.columns[k] = moved;
+    this.places[moved] = k;
+    this.atUpper[k] = this.atUpper[last] as number;
+    this.costs[k] = this.costs[last] as number;
+    for (let at = 0; at < this.cells.length; at += this.room) this.cells[at + k] = this.cells[at + last] as number;
   }
 
   /**
@@ -153,6 +175,7 @@ export class Tableau {
     this.places[entering] = -1 - r;
     this.places[leaving] = q;
     this.atUpper[q] = Number(toUpper);
+    this.dropIfFixed(q);
   }
 
   private eliminate(into: Float64Array, offset: number, at: number, q: number, p: number): void {
@@ -181,6 +204,7 @@ export class Tableau {
 
   value(variable: number): number {
     const place = this.places[variable] as number;
+    if (place === DROPPED) return this.lower[variable] as number;
     return place < 0 ? (this.values[-1 - place] as number) : this.valueOutside(place);
   }
 }
