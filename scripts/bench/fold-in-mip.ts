@@ -31,7 +31,8 @@ export function foldInMip(problem: FoldInProblem): string {
     const most = Math.min(cap, grams(usable - problem.sliver));
     objective.push(`+ ${grams(usable) - kappa} e${i}`, `+ q${i}`, `- ${kappa} p${i}`);
     rows.push(`q${i} - ${Math.max(0, most)} p${i} <= 0`, `q${i} - ${minimum} p${i} >= 0`);
-    rows.push(mustUse ? `e${i} >= 1` : `e${i} + p${i} <= 1`);
+    rows.push(`e${i} + p${i} <= 1`);
+    if (mustUse) rows.push(`e${i} >= 1`);
     if (most < minimum) rows.push(`p${i} <= 0`);
     if (grams(usable) > cap || usable === 0) rows.push(`e${i} <= 0`);
     binaries.push(`e${i}`, `p${i}`);

@@ -66,7 +66,7 @@ function rowsOf(problem: FoldInProblem, kept: readonly Omit<Candidate, 'shares'>
     target: of(share),
     lower: of((id) => Math.max(0, share(id) - tau(id))),
     upper: of((id) => share(id) + tau(id)),
-    leastFresh: of((id) => Math.min(problem.minimumFresh, Math.floor((least * share(id)) / WHOLE))),
+    leastFresh: leastFreshOf(problem, components, least),
     candidates: kept.map((candidate): Candidate => {
       const shares = new Float64Array(components.length);
       for (const [id, ppb] of compositionAt(problem, candidate.index)) shares[places.get(id) as number] = ppb / WHOLE;
@@ -75,6 +75,13 @@ function rowsOf(problem: FoldInProblem, kept: readonly Omit<Candidate, 'shares'>
     least,
     greatest,
   };
+}
+
+/** m_j = min(m, M·t_j) in mg, of a batch of `batch` mg. */
+export function leastFreshOf(problem: FoldInProblem, components: readonly string[], batch: number): Float64Array {
+  return Float64Array.from(components, (id) =>
+    Math.min(problem.minimumFresh, Math.floor((batch * (problem.target.get(id) ?? 0)) / WHOLE)),
+  );
 }
 
 function compositionAt(problem: FoldInProblem, index: number): ReadonlyMap<string, number> {

@@ -1,7 +1,7 @@
 import { questionsOf } from './fold-in-branch.ts';
-import type { Change } from './fold-in-decisions.ts';
+import type { Change, Fresh } from './fold-in-decisions.ts';
 import { type Rounded, roundPlan } from './fold-in-round.ts';
-import { Subset } from './fold-in-subset.ts';
+import { NOTHING, Subset } from './fold-in-subset.ts';
 
 const MOST_STEPS = 60;
 
@@ -32,7 +32,14 @@ function certainty(nearness: number): number {
   return nearness >= 0.5 ? nearness : 0.5 - nearness;
 }
 
+/** Components of which there is no fresh ink before rounding get none; where that does not come out, as rounding likes. */
 function round(subset: Subset): Rounded | undefined {
   const { search, taken, batch, decisions } = subset;
-  return roundPlan(search, { taken, batch, fresh: decisions.fresh });
+  const asFound = decisions.fresh.map((fresh, j): Fresh => {
+    if (fresh !== 'free' || search.target[j] === 0) return fresh;
+    return subset.freshOf(j) < NOTHING ? 'none' : 'free';
+  });
+  return (
+    roundPlan(search, { taken, batch, fresh: asFound }) ?? roundPlan(search, { taken, batch, fresh: decisions.fresh })
+  );
 }

@@ -1,5 +1,5 @@
 import type { FoldInPlan } from './fold-in.ts';
-import type { Search } from './fold-in-candidates.ts';
+import { type Search, leastFreshOf } from './fold-in-candidates.ts';
 import { FoldInError } from './fold-in-check.ts';
 import { planNear } from './fold-in-dive.ts';
 import type { Rounded } from './fold-in-round.ts';
@@ -14,11 +14,25 @@ export class Incumbent {
   /** mg */
   objective: number;
 
-  /** @throws FoldInError when a bucket must be used that cannot be */
   constructor(search: Search) {
     this.search = search;
-    if (search.candidates.some((candidate) => candidate.mustUse)) this.best = withoutChoice(search);
-    this.objective = this.best?.objective ?? (search.greatest > search.least ? -search.least : 0);
+    const mustUse = search.candidates.some((candidate) => candidate.mustUse);
+    if (mustUse) this.best = withoutChoice(search);
+    const nothing = search.greatest > search.least ? -search.least : 0;
+    this.objective = this.best?.objective ?? (mustUse ? -Infinity : nothing);
+  }
+
+  /** Without a bucket that must be used there is always one. */
+  get isThere(): boolean {
+    return this.objective > -Infinity;
+  }
+
+  /** In a range the least fresh weight grows with the batch: with the greatest one's, what is found can be weighed. */
+  offerWeighable(): void {
+    const { search } = this;
+    if (search.greatest === search.least) return;
+    const leastFresh = leastFreshOf(search.problem, search.components, search.greatest);
+    this.offer(planNear(rootOf({ ...search, leastFresh }), this.enough));
   }
 
   offer(found: Rounded | undefined): void {
@@ -35,26 +49,29 @@ export class Incumbent {
 
   /** A bound this near is the same plan: a step for each bucket is lost in rounding, and a millionth is no ink. */
   private get allowance(): number {
+    if (!this.isThere) return 0;
     const rounding = this.search.problem.readability * Math.max(1, this.opened);
     return Math.max(rounding, Math.abs(this.objective) * 1e-6);
   }
 
-  /** @param bound mg; no plan has a greater objective @throws FoldInError when nothing can be weighed */
+  /** @param bound mg; no plan has a greater objective @throws FoldInError when there is no plan */
   describe(bound: number): FoldInPlan {
     this.best ??= withoutChoice(this.search);
+    if (this.best === undefined) throw new FoldInError(this.whyNot);
     const objectiveBound = Math.max(this.objective, bound) as Milligrams;
     const isProven = objectiveBound <= this.enough + 1;
     const used = new Set(this.best.fromBuckets.map((from) => from.bucketId));
     const excluded = this.search.excluded.filter(({ bucketId }) => !used.has(bucketId));
     return { status: !isProven ? 'gap' : used.size === 0 ? 'none' : 'best', ...this.best, objectiveBound, excluded };
   }
+
+  private get whyNot(): string {
+    return this.isThere ? 'This batch cannot be weighed on this scale.' : 'That tub cannot be emptied into this batch.';
+  }
 }
 
-/** Without any bucket but those that must be used. @throws FoldInError when not even that can be weighed */
-function withoutChoice(search: Search): Rounded {
+/** Without any bucket but those that must be used. */
+function withoutChoice(search: Search): Rounded | undefined {
   const candidates = search.candidates.filter((candidate) => candidate.mustUse);
-  const plan = planNear(rootOf({ ...search, candidates }), -Infinity);
-  if (plan !== undefined) return plan;
-  if (candidates.length > 0) throw new FoldInError('That tub cannot be emptied into this batch.');
-  throw new FoldInError('This batch cannot be weighed on this scale.');
+  return planNear(rootOf({ ...search, candidates }), -Infinity);
 }

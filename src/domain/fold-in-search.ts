@@ -26,6 +26,7 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
   const all = rootOf(whole);
   const best = new Incumbent(whole);
   best.offer(planNear(all, best.enough));
+  best.offerWeighable();
   const root = withoutHopelessCandidates(all, best);
   const [subset, scratch] = [new Subset(root), new Subset(root)];
   const open = new Frontier();
@@ -43,13 +44,13 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
     subset.decide(withoutHopeless(node, best));
     const isOpen = subset.solve(best.enough) === 'optimal';
     const questions = isOpen ? questionsOf(subset) : [];
-    if (isOpen && (questions.length === 0 || visited % DIVE_EVERY === DIVE_EVERY - 1))
-      best.offer(planNear(subset, best.enough));
+    const isDive = questions.length === 0 || !best.isThere || visited % DIVE_EVERY === DIVE_EVERY - 1;
+    if (isOpen && isDive) best.offer(planNear(subset, best.enough));
     if (questions.length === 0) ended.push(lower(node, nodeOf(subset, subset.certificate, node.depth)));
     for (const child of branch(subset, node, questions, best.enough, scratch)) {
       if (child.bound.value > best.objective - MARGIN) open.push(child);
     }
-    if (visited % YIELD_EVERY === YIELD_EVERY - 1) {
+    if (best.isThere && visited % YIELD_EVERY === YIELD_EVERY - 1) {
       const plan = best.describe(floatingBound([...open.nodes, ...ended]));
       yield { plan, bound: plan.objectiveBound };
     }
