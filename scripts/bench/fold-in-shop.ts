@@ -41,7 +41,7 @@ export function makeShop(seed: number, ask: Ask): FoldInProblem {
   };
 }
 
-function formula(random: Random): Map<string, number> {
+export function formula(random: Random): Map<string, number> {
   const parts = new Map<string, number>([['base', random.int(300, 900)]]);
   if (random.next() < 0.5) parts.set('white', random.int(20, 400));
   if (random.next() < 0.3) parts.set('clear', random.int(20, 300));
@@ -51,7 +51,7 @@ function formula(random: Random): Map<string, number> {
 }
 
 /** The same inks in other amounts: lighter, darker, a little off. */
-function variant(random: Random, of: ReadonlyMap<string, number>): Map<string, number> {
+export function variant(random: Random, of: ReadonlyMap<string, number>): Map<string, number> {
   const depth = random.pick([0.25, 0.5, 0.8, 1, 1.2]);
   return new Map(
     [...of].map(([id, parts]) => {
@@ -61,7 +61,7 @@ function variant(random: Random, of: ReadonlyMap<string, number>): Map<string, n
   );
 }
 
-function bucket(random: Random, id: string, near: Map<string, number>[], all: Map<string, number>[]): Bucket {
+export function bucket(random: Random, id: string, near: Map<string, number>[], all: Map<string, number>[]): Bucket {
   const kind = random.next();
   const one = () => weighed(random, random.pick(random.next() < 0.4 ? near : all));
   const usable = (Math.round(10 ** (1.5 + 1.8 * random.next()) * 10) * 100) as Milligrams;
@@ -84,16 +84,16 @@ function weighed(random: Random, parts: ReadonlyMap<string, number>): Compositio
   );
 }
 
-function recipe(parts: ReadonlyMap<string, number>): Composition {
+export function recipe(parts: ReadonlyMap<string, number>): Composition {
   return compositionFromMasses([...parts].map(([componentId, mass]) => ({ componentId, mass: mass as Milligrams })));
 }
 
-function sharesPigments(a: ReadonlyMap<string, number>, b: ReadonlyMap<string, number>): boolean {
+export function sharesPigments(a: ReadonlyMap<string, number>, b: ReadonlyMap<string, number>): boolean {
   return [...a.keys()].every((id) => b.has(id) || EXTENDERS.includes(id));
 }
 
 /** The defaults of a new shop: base and extender loose, pigment 2 % of its share, strong 1 %, foreign extender 2 %. */
-function toleranceOf(target: Composition): Map<string, PartsPerBillion> {
+export function toleranceOf(target: Composition): Map<string, PartsPerBillion> {
   const tolerance = new Map<string, PartsPerBillion>();
   for (const id of EXTENDERS) tolerance.set(id, (target.has(id) ? 50_000_000 : 20_000_000) as PartsPerBillion);
   for (const [id, share] of target) {

@@ -1,0 +1,55 @@
+import { type Search, prepareSearch } from './fold-in-candidates.ts';
+import type { FoldInProblem } from './fold-in.ts';
+import { type Relaxation, relaxationOf } from './fold-in-program.ts';
+import type { QueueProblem } from './plan-queue.ts';
+
+/** One batch of the queue as the search sees it, and what of the shelf could go into it. */
+export interface QueueBatch {
+  id: string;
+  /** Where it stands in the queue. */
+  place: number;
+  ask: Omit<FoldInProblem, 'buckets'>;
+  search: Search;
+  relaxation: Relaxation;
+  /** Of each candidate: where it stands on the shelf, and the most mg that the batch could take of it. */
+  buckets: Int32Array;
+  caps: Float64Array;
+  /** mg, on a step: the least that is taken of a bucket without emptying it. */
+  minimum: number;
+}
+
+/** How an opened candidate may give, mg: from `least` to `partly`, or `most` whole. Never when `most` is 0. */
+export interface Limits {
+  least: Float64Array;
+  partly: Float64Array;
+  most: Float64Array;
+}
+
+export function prepareBatch(queue: QueueProblem, place: number): QueueBatch {
+  const { id, allowed, ...ask } = queue.batches[place] as QueueProblem['batches'][number];
+  const standing = queue.buckets.flatMap((bucket, n) => (allowed === undefined || allowed.has(bucket.id) ? [n] : []));
+  // Another batch may take what this one leaves, and any of them may be the one that empties what must be used.
+  const buckets = standing.map((n) => ({ ...(queue.buckets[n] as QueueProblem['buckets'][number]), mustUse: false }));
+  const search = prepareSearch({ ...ask, buckets, sliver: 0 as typeof ask.sliver });
+  return {
+    id,
+    place,
+    ask,
+    search,
+    relaxation: relaxationOf(search),
+    buckets: Int32Array.from(search.candidates, ({ index }) => standing[index] as number),
+    caps: Float64Array.from(search.candidates, ({ canEmpty, usable, most }) => (canEmpty ? usable : most)),
+    minimum: search.minimum,
+  };
+}
+
+/** What any plan of the queue could take, whatever the other batches leave. */
+export function widestLimits(batch: QueueBatch, sliver: number): Limits {
+  const { caps, minimum } = batch;
+  return {
+    // What is left by others may be emptied although it is under the minimum, but it is no sliver.
+    least: caps.map((cap) => Math.min(cap, minimum, sliver)),
+    partly: caps,
+    most: caps,
+  };
+}

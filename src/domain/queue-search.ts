@@ -1,0 +1,51 @@
+import { FoldInError } from './fold-in-check.ts';
+import type { QueuePlans, QueueProblem } from './plan-queue.ts';
+import { prepareBatch } from './queue-batch.ts';
+import { told } from './queue-check.ts';
+import { QueueDescription } from './queue-describe.ts';
+import { QueuePrices } from './queue-prices.ts';
+import { QueueRecreation } from './queue-recreate.ts';
+import { freshPlan } from './queue-round.ts';
+import { QueueShelf } from './queue-shelf.ts';
+
+/** Turns for each batch without a better plan after which the search ends, and at least. */
+const IDLE_EACH = 12;
+const IDLE_LEAST = 60;
+/** Rounds of prices before the first plans. */
+const FIRST_ROUNDS = 3;
+
+/** Prices first, then plans at these prices; then better prices and better plans by turns. */
+export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePlans> {
+  const usable = problem.buckets.map((bucket) => bucket.usable);
+  const sliver = problem.batches.reduce((most, batch) => Math.max(most, batch.sliver), 0);
+  const batches = problem.batches.map((_, place) => prepareBatch(problem, place));
+  const fresh = batches.map((batch) => told(`Batch ${batch.id}`, () => freshPlan(batch)));
+  const musts = problem.buckets.flatMap(({ mustUse, usable: mass }, bucket) => (mustUse && mass > 0 ? [bucket] : []));
+  const prices = new QueuePrices(batches, usable, sliver);
+  const shelf = new QueueShelf(usable, batches, sliver);
+  const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
+  const description = new QueueDescription(problem, batches, shelf, prices);
+
+  const rounds = prices.rounds();
+  while (prices.round < FIRST_ROUNDS && rounds.next().done !== true);
+  recreation.planAll();
+  let isPriced = false;
+  let idle = 0;
+  const most = IDLE_LEAST + IDLE_EACH * batches.length;
+  while (!description.isReached && (idle < most || !isPriced)) {
+    const turn = recreation.turn();
+    for (let step = turn.next(); ; step = turn.next()) {
+      isPriced ||= rounds.next().done === true;
+      if (step.done) {
+        idle = step.value ? 0 : idle + 1;
+        break;
+      }
+    }
+    if (recreation.isEmptied) yield description.found;
+    else if (idle >= most) break;
+  }
+  const must = musts.find((bucket) => shelf.left[bucket] !== 0);
+  if (must !== undefined)
+    throw new FoldInError(`Bucket ${problem.buckets[must]?.id} cannot be used up by these batches: allow it to stay.`);
+  return description.found;
+}
