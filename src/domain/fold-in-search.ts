@@ -28,7 +28,8 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
   best.offer(planNear(all, best.enough));
   best.offerWeighable();
   const root = withoutHopelessCandidates(all, best);
-  const [subset, scratch] = [new Subset(root), new Subset(root)];
+  let subset: Subset | undefined;
+  let scratch: Subset | undefined;
   const open = new Frontier();
   open.push(nodeOf(root, root.certificate, 0));
   /** Not worth following, or without a way on: no plan of theirs exceeds their bound. */
@@ -40,13 +41,14 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
       ended.push(node);
       break;
     }
-    subset.copyFrom(root);
+    subset = renewed(subset, root);
     subset.decide(withoutHopeless(node, best));
     const isOpen = subset.solve(best.enough) === 'optimal';
     const questions = isOpen ? questionsOf(subset) : [];
     const isDive = questions.length === 0 || !best.isThere || visited % DIVE_EVERY === DIVE_EVERY - 1;
     if (isOpen && isDive) best.offer(planNear(subset, best.enough));
     if (questions.length === 0) ended.push(lower(node, nodeOf(subset, subset.certificate, node.depth)));
+    scratch ??= new Subset(root);
     for (const child of branch(subset, node, questions, best.enough, scratch)) {
       if (child.bound.value > best.objective - MARGIN) open.push(child);
     }
@@ -56,6 +58,12 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
     }
   }
   return best.describe(exactBound(root, [...open.nodes, ...ended]));
+}
+
+function renewed(subset: Subset | undefined, from: Subset): Subset {
+  if (subset === undefined) return new Subset(from);
+  subset.copyFrom(from);
+  return subset;
 }
 
 function lower(a: Node, b: Node): Node {

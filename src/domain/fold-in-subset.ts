@@ -35,12 +35,18 @@ export class Subset {
   constructor(of: { search: Search; relaxation: Relaxation } | Subset) {
     this.search = of.search;
     this.relaxation = of.relaxation;
+    if (of instanceof Subset) {
+      this.simplex = new DualSimplex(of.simplex);
+      this.decisions = of.decisions;
+      this.opened = of.opened;
+      this.outcome = of.outcome;
+      return;
+    }
     this.simplex = new DualSimplex(of.relaxation.program, of.search.candidates.length);
     this.decisions = {
       buckets: of.search.candidates.map((): Decision => 'free'),
       fresh: of.search.components.map(() => 'free'),
     };
-    if (of instanceof Subset) this.copyFrom(of);
   }
 
   copyFrom(other: Subset): void {

@@ -39,24 +39,47 @@ export class Tableau {
   objective = 0;
 
   /** @param variants how many variables may be added later by `addVariant` */
-  constructor(program: BoxedProgram, variants: number) {
-    const n = program.gains.length;
-    this.rows = program.right.length;
+  constructor(of: BoxedProgram | Tableau, variants = 0) {
+    if (of instanceof Tableau) {
+      this.rows = of.rows;
+      this.firstSlack = of.firstSlack;
+      this.outside = of.outside;
+      this.room = of.room;
+      this.cells = of.cells.slice();
+      this.costs = of.costs.slice();
+      this.columns = of.columns.slice();
+      this.atUpper = of.atUpper.slice();
+      this.inside = of.inside.slice();
+      this.values = of.values.slice();
+      this.lower = of.lower.slice();
+      this.upper = of.upper.slice();
+      this.places = of.places.slice();
+      this.objective = of.objective;
+      return;
+    }
+    const n = of.gains.length;
+    const all = n + of.right.length + variants;
+    this.rows = of.right.length;
     this.firstSlack = n;
     this.outside = n;
     this.room = n + Math.min(variants, 8);
     this.cells = new Float64Array(this.rows * this.room);
-    this.costs = resized(program.gains, this.room);
-    this.columns = Int32Array.from({ length: this.room }, (_, k) => k);
+    copyRows(of.matrix, n, this.cells, this.room, n);
+    this.costs = resized(of.gains, this.room);
+    this.columns = new Int32Array(this.room);
     this.atUpper = new Uint8Array(this.room);
-    this.inside = Int32Array.from({ length: this.rows }, (_, r) => n + r);
-    this.values = program.right.slice();
-    const all = n + this.rows + variants;
-    this.lower = resized(program.lower, all);
-    this.upper = resized(program.upper, all);
-    this.places = Int32Array.from({ length: all }, (_, variable) => (variable < n ? variable : n - 1 - variable));
-    for (let r = 0; r < this.rows; r++) this.cells.set(program.matrix.subarray(r * n, (r + 1) * n), r * this.room);
+    this.inside = new Int32Array(this.rows);
+    this.values = of.right.slice();
+    this.lower = resized(of.lower, all);
+    this.upper = resized(of.upper, all);
+    this.places = new Int32Array(all);
+    for (let r = 0; r < this.rows; r++) {
+      this.inside[r] = n + r;
+      this.places[n + r] = -1 - r;
+    }
     for (let k = 0; k < n; k++) {
+      this.columns[k] = k;
+      this.places[k] = k;
       this.atUpper[k] = Number((this.costs[k] as number) > 0);
       this.shift(k, this.valueOutside(k));
     }
