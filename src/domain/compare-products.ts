@@ -10,3 +10,14 @@ export function compareProducts(a: number, b: number, c: number, d: number): num
   const exact = BigInt(a) * BigInt(b) - BigInt(c) * BigInt(d);
   return exact > 0n ? 1 : exact < 0n ? -1 : 0;
 }
+
+/** Below this a quotient of doubles is off by less than one. */
+const NEAR = 2 ** 50;
+
+/** ⌊a·b / c⌋ for whole numbers from 0 to 2⁵³, c above 0; exact where the result is below 2⁵³. */
+export function floorQuotient(a: number, b: number, c: number): number {
+  const near = Math.floor((a * b) / c);
+  if (near > NEAR) return Number((BigInt(a) * BigInt(b)) / BigInt(c));
+  if (compareProducts(near, c, a, b) > 0) return near - 1;
+  return compareProducts(near + 1, c, a, b) <= 0 ? near + 1 : near;
+}

@@ -75,6 +75,7 @@ function stepDown(from: Ratio, shares: readonly number[], edges: readonly number
 
 /** Negative when `a` is the smaller. */
 export function compareRatios(a: Ratio, b: Ratio): number {
+  if (a.over === b.over && a.under === b.under) return 0;
   return compareProducts(a.over, b.under, b.over, a.under);
 }
 

@@ -1,15 +1,6 @@
-/** One amount to be shown in whole steps: `need`/`denominator` steps, within whole bounds. */
-export interface Need {
-  need: bigint;
-  lower: bigint;
-  upper: bigint;
-}
+import { type ErrorLimit, type Need, ceilDivide, leastError, relativeError, windowOf } from './least-error.ts';
 
-interface Candidate {
-  /** Relative error |w·denominator − need| / need. */
-  error: bigint;
-  need: bigint;
-}
+export { type Need, ceilDivide };
 
 /**
  * Whole steps that add up to `sum`, with the smallest worst relative error (min-max, exact).
@@ -21,50 +12,16 @@ export function minMaxSteps(
   denominator: bigint,
   sum: bigint,
 ): { steps: bigint[]; worst: number } | undefined {
-  const candidates = needs.flatMap((entry) => candidatesOf(entry, denominator)).sort(compareErrors);
-  let low = 0;
-  let high = candidates.length - 1;
-  if (high < 0 || !reaches(needs, denominator, sum, candidates[high] as Candidate)) return undefined;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (reaches(needs, denominator, sum, candidates[middle] as Candidate)) high = middle;
-    else low = middle + 1;
-  }
-  const worst = candidates[low] as Candidate;
-  const steps = share(needs, denominator, sum, worst);
-  return { steps, worst: worst.need === 0n ? 0 : Number(worst.error) / Number(worst.need) };
+  const worst = leastError(needs, denominator, (limit) => reaches(needs, denominator, sum, limit));
+  if (worst === undefined) return undefined;
+  return { steps: shareOut(needs, denominator, sum, worst), worst: relativeError(worst) };
 }
 
-function candidatesOf({ need, lower, upper }: Need, denominator: bigint): Candidate[] {
-  const list: Candidate[] = [{ error: 0n, need: 1n }];
-  if (need === 0n) return list;
-  for (let w = lower; w <= upper; w++) {
-    const error = w * denominator - need;
-    list.push({ error: error < 0n ? -error : error, need });
-  }
-  return list;
-}
-
-function compareErrors(a: Candidate, b: Candidate): number {
-  const left = a.error * b.need;
-  const right = b.error * a.need;
-  return left < right ? -1 : left > right ? 1 : 0;
-}
-
-/** Bounds of the steps of one need when its relative error may be at most `limit`. */
-function window({ need, lower, upper }: Need, denominator: bigint, limit: Candidate): [bigint, bigint] {
-  if (need === 0n) return [lower, upper];
-  const slack = need * limit.error;
-  const least = ceilDivide(need * limit.need - slack, denominator * limit.need);
-  const most = (need * limit.need + slack) / (denominator * limit.need);
-  return [least > lower ? least : lower, most < upper ? most : upper];
-}
-
-function reaches(needs: readonly Need[], denominator: bigint, sum: bigint, limit: Candidate): boolean {
+function reaches(needs: readonly Need[], denominator: bigint, sum: bigint, limit: ErrorLimit): boolean {
   let least = 0n;
   let most = 0n;
   for (const entry of needs) {
-    const [from, to] = window(entry, denominator, limit);
+    const [from, to] = windowOf(entry, denominator, limit);
     if (from > to) return false;
     least += from;
     most += to;
@@ -72,12 +29,12 @@ function reaches(needs: readonly Need[], denominator: bigint, sum: bigint, limit
   return least <= sum && sum <= most;
 }
 
-/** Nearest steps within the windows, then single steps where they cost the least relative error. */
-function share(needs: readonly Need[], denominator: bigint, sum: bigint, limit: Candidate): bigint[] {
-  const windows = needs.map((entry) => window(entry, denominator, limit));
-  const steps = needs.map(({ need }, n) => {
+/** Nearest steps within the windows of `limit`, then single steps where they cost the least relative error. */
+export function shareOut(needs: readonly Need[], denominator: bigint, sum: bigint, limit: ErrorLimit): bigint[] {
+  const windows = needs.map((entry) => windowOf(entry, denominator, limit));
+  const steps = needs.map((entry, n) => {
     const [from, to] = windows[n] as [bigint, bigint];
-    const nearest = (2n * need + denominator) / (2n * denominator);
+    const nearest = nearestStep(entry, denominator);
     return nearest < from ? from : nearest > to ? to : nearest;
   });
   let missing = sum - steps.reduce((a, b) => a + b, 0n);
@@ -90,6 +47,11 @@ function share(needs: readonly Need[], denominator: bigint, sum: bigint, limit: 
   return steps;
 }
 
+/** Halves go up. */
+export function nearestStep({ need }: Need, denominator: bigint): bigint {
+  return (2n * need + denominator) / (2n * denominator);
+}
+
 function cheapestMove(
   needs: readonly Need[],
   denominator: bigint,
@@ -97,20 +59,15 @@ function cheapestMove(
   windows: readonly [bigint, bigint][],
   by: bigint,
 ): number {
-  let best: { n: number; cost: Candidate } | undefined;
+  let best: { n: number; cost: ErrorLimit } | undefined;
   needs.forEach(({ need }, n) => {
     const next = (steps[n] as bigint) + by;
     const [from, to] = windows[n] as [bigint, bigint];
     if (next < from || next > to) return;
     const off = next * denominator - need;
     const cost = need === 0n ? { error: 1n, need: 1n } : { error: off < 0n ? -off : off, need };
-    if (best === undefined || compareErrors(cost, best.cost) < 0) best = { n, cost };
+    if (best === undefined || cost.error * best.cost.need < best.cost.error * cost.need) best = { n, cost };
   });
   if (best === undefined) throw new Error('The windows reach the sum, so a move must exist.');
   return best.n;
-}
-
-export function ceilDivide(a: bigint, b: bigint): bigint {
-  const quotient = a / b;
-  return a % b > 0n ? quotient + 1n : quotient;
 }

@@ -1,3 +1,4 @@
+import { compareProducts, floorQuotient } from './compare-products.ts';
 import { type Composition, requireWhole } from './composition.ts';
 import {
   type Ingredients,
@@ -64,10 +65,18 @@ function shareOf(
 }
 
 function become(formulaId: string, { over, under }: Ratio, usable: number, step: number): Becoming | undefined {
-  const largestShare = Number((BigInt(over) * BigInt(WHOLE)) / BigInt(under)) as PartsPerBillion;
-  const steps = ceilDivide(BigInt(usable) * BigInt(under), BigInt(over) * BigInt(step));
-  const smallestBatch = Number(steps * BigInt(step)) as Milligrams;
+  const largestShare = floorQuotient(over, WHOLE, under) as PartsPerBillion;
+  const smallestBatch = (stepsUp(usable, under, over, step) * step) as Milligrams;
   return Number.isSafeInteger(smallestBatch) ? { formulaId, largestShare, smallestBatch } : undefined;
+}
+
+/** ⌈usable·under / (over·step)⌉ */
+function stepsUp(usable: number, under: number, over: number, step: number): number {
+  if (!Number.isSafeInteger(over * step)) {
+    return Number(ceilDivide(BigInt(usable) * BigInt(under), BigInt(over) * BigInt(step)));
+  }
+  const steps = floorQuotient(usable, under, over * step);
+  return compareProducts(steps, over * step, usable, under) < 0 ? steps + 1 : steps;
 }
 
 function requireFormulas(formulas: readonly { id: string; target: Composition }[]): void {
