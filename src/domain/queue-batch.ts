@@ -1,5 +1,6 @@
 import { type Search, prepareSearch } from './fold-in-candidates.ts';
 import type { FoldInProblem } from './fold-in.ts';
+import type { Milligrams } from './mass.ts';
 import { type Relaxation, relaxationOf } from './fold-in-program.ts';
 import type { QueueProblem } from './plan-queue.ts';
 
@@ -14,8 +15,9 @@ export interface QueueBatch {
   /** Of each candidate: where it stands on the shelf, and the most mg that the batch could take of it. */
   buckets: Int32Array;
   caps: Float64Array;
-  /** mg, on a step: the least that is taken of a bucket without emptying it. */
+  /** mg, on a step: the least that is taken of a bucket without emptying it; and the least that may be left to empty. */
   minimum: number;
+  leastRest: number;
 }
 
 /** How an opened candidate may give, mg: from `least` to `partly`, or `most` whole. Never when `most` is 0. */
@@ -30,7 +32,8 @@ export function prepareBatch(queue: QueueProblem, place: number): QueueBatch {
   const standing = queue.buckets.flatMap((bucket, n) => (allowed === undefined || allowed.has(bucket.id) ? [n] : []));
   // Another batch may take what this one leaves, and any of them may be the one that empties what must be used.
   const buckets = standing.map((n) => ({ ...(queue.buckets[n] as QueueProblem['buckets'][number]), mustUse: false }));
-  const search = prepareSearch({ ...ask, buckets, sliver: 0 as typeof ask.sliver });
+  const leastRest = Math.min(ask.minimumFromBucket, ...queue.batches.map(({ sliver }) => sliver)) as Milligrams;
+  const search = prepareSearch({ ...ask, buckets, minimumFromBucket: leastRest, sliver: 0 as Milligrams });
   return {
     id,
     place,
@@ -39,17 +42,12 @@ export function prepareBatch(queue: QueueProblem, place: number): QueueBatch {
     relaxation: relaxationOf(search),
     buckets: Int32Array.from(search.candidates, ({ index }) => standing[index] as number),
     caps: Float64Array.from(search.candidates, ({ canEmpty, usable, most }) => (canEmpty ? usable : most)),
-    minimum: search.minimum,
+    minimum: Math.max(1, Math.ceil(ask.minimumFromBucket / ask.readability)) * ask.readability,
+    leastRest,
   };
 }
 
 /** What any plan of the queue could take, whatever the other batches leave. */
-export function widestLimits(batch: QueueBatch, sliver: number): Limits {
-  const { caps, minimum } = batch;
-  return {
-    // What is left by others may be emptied although it is under the minimum, but it is no sliver.
-    least: caps.map((cap) => Math.min(cap, minimum, sliver)),
-    partly: caps,
-    most: caps,
-  };
+export function widestLimits({ caps, leastRest }: QueueBatch): Limits {
+  return { least: caps.map((cap) => Math.min(cap, leastRest)), partly: caps, most: caps };
 }

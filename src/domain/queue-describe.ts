@@ -28,7 +28,7 @@ export class QueueDescription {
   /** Whether the bound is as near as rounding to the scales' steps allows. */
   get isReached(): boolean {
     const rounding = this.batches.reduce(
-      (sum, { ask, place }) => sum + ask.readability * (1 + (this.shelf.plans[place]?.takings.length ?? 0)),
+      (sum, { ask, place }) => sum + ask.readability * (this.shelf.plans[place]?.takings.length ?? 0),
       0,
     );
     return this.gap <= rounding + MARGIN * this.batches.length;

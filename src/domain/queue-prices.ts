@@ -39,7 +39,6 @@ export class QueuePrices {
   constructor(
     private readonly batches: readonly QueueBatch[],
     private readonly usable: readonly number[],
-    private readonly sliver: number,
   ) {
     this.prices = new Float64Array(usable.length);
     this.alone = new Float64Array(batches.length).fill(Infinity);
@@ -93,7 +92,7 @@ export class QueuePrices {
       const isWell = known.nodes >= this.nodes || known.bound - known.floor < NEAR;
       if (isWell && bound - floor < known.bound - known.floor + NEAR) return bound;
     }
-    const search = new PricedSearch(batch, prices, widestLimits(batch, this.sliver), floor);
+    const search = new PricedSearch(batch, prices, widestLimits(batch), floor);
     for (let nodes = 0; nodes < this.nodes && !search.run(NODES_A_STEP); nodes += NODES_A_STEP) yield;
     yield;
     const { bound, value, taken } = search.found;

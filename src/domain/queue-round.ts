@@ -14,34 +14,30 @@ export interface BatchPlan {
 }
 
 type Bucket = FoldInProblem['buckets'][number];
+/** mg by which floating-point masses are off at most. */
+const NEAR = 1e-2;
 
 /** All fresh. @throws FoldInError when the batch cannot be weighed */
 export function freshPlan(batch: QueueBatch): BatchPlan {
   return planOf(batch, [], foldInBuckets({ ...batch.ask, buckets: [] }));
 }
 
-/** The kernel's plan from just these buckets, of which it takes no more than `taken` (mg of each candidate). */
+/** The kernel's plan from just these buckets, near what is `taken` of each candidate (mg); all fresh when there is none. */
 export function roundTaken(batch: QueueBatch, taken: Float64Array, limits: Limits, fresh: BatchPlan): BatchPlan {
-  const near = taken.map((mass) => Math.ceil(mass) + (mass === 0 ? 0 : batch.ask.readability));
-  const found =
-    planWithin(batch, near, limits) ??
-    planWithin(
-      batch,
-      near.map((mass) => mass && Infinity),
-      limits,
-    );
+  const found = planNear(batch, taken, batch.ask.readability, limits) ?? planNear(batch, taken, Infinity, limits);
   return found !== undefined && found.value > fresh.value ? found : fresh;
 }
 
 /** What is taken whole must be emptied; the others are offered as if they were larger, so that they never are. */
-function planWithin(batch: QueueBatch, within: Float64Array, { partly, most }: Limits): BatchPlan | undefined {
+function planNear(batch: QueueBatch, taken: Float64Array, more: number, { partly, most }: Limits) {
   const rest = batch.search.greatest + 1;
   const offered = batch.search.candidates.flatMap(({ index }, k) => {
-    const mustUse = (within[k] as number) >= (most[k] as number) && (most[k] as number) > (partly[k] as number);
-    const mass = mustUse ? (most[k] as number) : Math.floor(Math.min(within[k] as number, partly[k] as number));
-    const usable = (mustUse ? mass : mass + rest) as Milligrams;
+    const [mass, whole, part] = [taken[k], most[k], partly[k]] as [number, number, number];
+    const mustUse = whole > part && mass >= whole - NEAR;
+    const usable = mustUse ? whole : Math.floor(Math.min(mass + NEAR + more, part)) + rest;
     const bucket = batch.search.problem.buckets[index] as Bucket;
-    return mass <= 0 ? [] : [{ bucket: { ...bucket, usable, mustUse }, place: batch.buckets[k] as number }];
+    if (mass === 0 || usable <= 0) return [];
+    return [{ bucket: { ...bucket, usable: usable as Milligrams, mustUse }, place: batch.buckets[k] as number }];
   });
   const buckets = offered.map(({ bucket }) => bucket);
   const found = tryFoldIn({ ...batch.ask, buckets, sliver: rest as Milligrams });

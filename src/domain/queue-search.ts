@@ -17,12 +17,11 @@ const FIRST_ROUNDS = 3;
 /** Prices first, then plans at these prices; then better prices and better plans by turns. */
 export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePlans> {
   const usable = problem.buckets.map((bucket) => bucket.usable);
-  const sliver = problem.batches.reduce((most, batch) => Math.max(most, batch.sliver), 0);
   const batches = problem.batches.map((_, place) => prepareBatch(problem, place));
   const fresh = batches.map((batch) => told(`Batch ${batch.id}`, () => freshPlan(batch)));
   const musts = problem.buckets.flatMap(({ mustUse, usable: mass }, bucket) => (mustUse && mass > 0 ? [bucket] : []));
-  const prices = new QueuePrices(batches, usable, sliver);
-  const shelf = new QueueShelf(usable, batches, sliver);
+  const prices = new QueuePrices(batches, usable);
+  const shelf = new QueueShelf(usable, batches);
   const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
   const description = new QueueDescription(problem, batches, shelf, prices);
 

@@ -9,12 +9,14 @@ export class QueueShelf {
   private readonly takers: readonly Map<number, number>[];
   readonly plans: (BatchPlan | undefined)[];
 
-  /** @param sliver mg: what stays of a bucket after all batches is nothing or at least this */
+  /** mg: what stays of a bucket after all batches is nothing or at least this. */
+  private readonly sliver: number;
+
   constructor(
     usable: readonly number[],
     private readonly batches: readonly QueueBatch[],
-    readonly sliver: number,
   ) {
+    this.sliver = batches.reduce((most, { ask }) => Math.max(most, ask.sliver), 1);
     this.left = Float64Array.from(usable);
     this.takers = usable.map(() => new Map());
     this.plans = batches.map(() => undefined);
