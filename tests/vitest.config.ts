@@ -5,7 +5,7 @@ import { defineConfig } from 'vitest/config';
 const root = fileURLToPath(new URL('..', import.meta.url));
 const unit = {
   name: 'unit',
-  include: ['src/**/*.test.{ts,tsx}', 'tests/reference/**/*.test.ts'],
+  include: ['src/**/*.test.{ts,tsx}', 'tests/reference/**/*.test.ts', 'tests/maths/**/*.test.ts'],
   setupFiles: ['fake-indexeddb/auto'],
 };
 const lint = {

@@ -57,46 +57,50 @@ export class DualSimplex extends Tableau {
   private entering(r: number, below: boolean): number {
     const variable = this.inside[r] as number;
     const at = r * this.room;
-    this.passed.length = 0;
-    for (;;) {
+    const helping = this.helping(at, below);
+    let n = this.nearest(helping, at);
+    for (let passed = 0; passed < helping.length; n = passed) {
+      const q = helping[n] as number;
       const value = this.values[r] as number;
       const missing = below ? (this.lower[variable] as number) - value : value - (this.upper[variable] as number);
-      const q = this.leastRatio(at, below);
-      if (q === -1) return -1;
       const column = this.columns[q] as number;
       const range = (this.upper[column] as number) - (this.lower[column] as number);
       if (Math.abs(this.cells[at + q] as number) * range >= missing - FEASIBLE) return q;
       const upwards = this.atUpper[q] === 0;
       this.atUpper[q] = Number(upwards);
       this.shift(q, upwards ? range : -range);
-      this.passed.push(q);
+      if (passed === 0) helping.sort((a, b) => this.compareRatios(a, b, at));
+      passed += 1;
     }
+    return -1;
   }
 
-  /** Columns that passed to their other bound in this step: their costs turn with the pivot. */
-  private readonly passed: number[] = [];
-
-  private leastRatio(at: number, below: boolean): number {
-    let found = -1;
-    let least = Infinity;
-    let size = 0;
+  /** The columns that can move the row's variable the way it must go. */
+  private helping(at: number, below: boolean): number[] {
+    const found: number[] = [];
     for (let k = 0; k < this.outside; k++) {
       const cell = this.cells[at + k] as number;
-      const up = this.atUpper[k] === 0;
       // Going up lowers the row's variable where the cell is positive.
-      const helps = below === up ? cell < -EPSILON : cell > EPSILON;
-      if (!helps) continue;
+      const helps = below === (this.atUpper[k] === 0) ? cell < -EPSILON : cell > EPSILON;
       const column = this.columns[k] as number;
-      if (this.lower[column] === this.upper[column]) continue;
-      if (this.passed.length > 0 && this.passed.includes(k)) continue;
-      const ratio = Math.abs(this.costs[k] as number) / Math.abs(cell);
-      if (ratio < least - 1e-12 || (ratio <= least + 1e-12 && Math.abs(cell) > size)) {
-        least = Math.min(least, ratio);
-        size = Math.abs(cell);
-        found = k;
-      }
+      if (helps && this.lower[column] !== this.upper[column]) found.push(k);
     }
     return found;
+  }
+
+  private nearest(helping: readonly number[], at: number): number {
+    let found = 0;
+    for (let n = 1; n < helping.length; n++) {
+      if (this.compareRatios(helping[n] as number, helping[found] as number, at) < 0) found = n;
+    }
+    return found;
+  }
+
+  /** By what a unit of the row's variable costs; of two that cost the same the one with the greater cell is first. */
+  private compareRatios(a: number, b: number, at: number): number {
+    const [cellA, cellB] = [Math.abs(this.cells[at + a] as number), Math.abs(this.cells[at + b] as number)];
+    const by = Math.abs(this.costs[a] as number) / cellA - Math.abs(this.costs[b] as number) / cellB;
+    return Math.abs(by) <= 1e-12 ? cellB - cellA : by;
   }
 
   /** Multiplier of a row, by its slack: any multipliers give a bound. */

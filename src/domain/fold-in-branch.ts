@@ -61,7 +61,7 @@ function isInGap({ canEmpty, most, usable }: Candidate, mass: number): boolean {
 }
 
 /** Questions of which both answers are tried out before one is chosen. */
-const TRIED = 8;
+export const TRIED = 8;
 
 /**
  * The subsets that follow: of the question whose answers lower the relaxation most.

@@ -1,10 +1,14 @@
 import type { FoldInPlan } from './fold-in.ts';
 import { type Search, leastFreshOf } from './fold-in-candidates.ts';
 import { FoldInError } from './fold-in-check.ts';
+import { mostOf } from './fold-in-decisions.ts';
 import { planNear } from './fold-in-dive.ts';
 import type { Rounded } from './fold-in-round.ts';
 import { rootOf } from './fold-in-subset.ts';
 import type { Milligrams } from './mass.ts';
+
+/** Buckets that are tried one by one. */
+const MOST_SINGLES = 12;
 
 /** The best plan so far; at first the one without any bucket but those that must be used. */
 export class Incumbent {
@@ -25,6 +29,17 @@ export class Incumbent {
   /** Without a bucket that must be used there is always one. */
   get isThere(): boolean {
     return this.objective > -Infinity;
+  }
+
+  /** The bucket that gives most by itself: where a plan of several is hard to find there is one of one. */
+  offerSingles(): void {
+    const { search } = this;
+    if (this.opened > 0 || search.candidates.some((candidate) => candidate.mustUse)) return;
+    const byMost = search.candidates.toSorted((a, b) => mostOf(b) - mostOf(a));
+    for (const candidate of byMost.slice(0, MOST_SINGLES)) {
+      if (mostOf(candidate) - search.problem.worthOpening <= this.enough) return;
+      this.offer(planNear(rootOf({ ...search, candidates: [candidate] }), this.enough));
+    }
   }
 
   /** In a range the least fresh weight grows with the batch: with the greatest one's, what is found can be weighed. */

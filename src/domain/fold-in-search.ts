@@ -1,5 +1,5 @@
 import type { FoldInPlan } from './fold-in.ts';
-import { branch, questionsOf } from './fold-in-branch.ts';
+import { TRIED, branch, questionsOf } from './fold-in-branch.ts';
 import type { Search } from './fold-in-candidates.ts';
 import { certify } from './fold-in-certificate.ts';
 import type { Decision } from './fold-in-decisions.ts';
@@ -9,11 +9,12 @@ import { Incumbent } from './fold-in-incumbent.ts';
 import { type Node, Subset, nodeOf, rootOf } from './fold-in-subset.ts';
 import type { Milligrams } from './mass.ts';
 
-/** Nodes after which the best plan is taken with its gap: a second or two of a desk computer. */
-const MOST_NODES = 6000;
+/** Cells of tableaus after which the best plan is taken with its gap: a second or two of a desk computer. */
+const MOST_WORK = 60_000_000;
+/** …and after which the caller is told how far it is. */
+const YIELD_WORK = 500_000;
 /** Bounds that are taken exactly; where more are tied, the floating one and its margin stand for them. */
 const MOST_EXACT = 200;
-const YIELD_EVERY = 10;
 /** A plan is sought near each node of so many. */
 const DIVE_EVERY = 6;
 /** mg: floating-point sums of up to 10⁹ mg err by far less. */
@@ -27,6 +28,7 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
   const best = new Incumbent(whole);
   best.offer(planNear(all, best.enough));
   best.offerWeighable();
+  best.offerSingles();
   const root = withoutHopelessCandidates(all, best);
   let subset: Subset | undefined;
   let scratch: Subset | undefined;
@@ -34,7 +36,9 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
   open.push(nodeOf(root, root.certificate, 0));
   /** Not worth following, or without a way on: no plan of theirs exceeds their bound. */
   const ended: Node[] = [];
-  for (let visited = 0; visited < MOST_NODES; visited++) {
+  let work = 0;
+  let told = 0;
+  for (let visited = 0; work < MOST_WORK; visited++) {
     const node = open.pop();
     if (node === undefined) break;
     if (node.bound.value <= best.enough) {
@@ -52,7 +56,9 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
     for (const child of branch(subset, node, questions, best.enough, scratch)) {
       if (child.bound.value > best.objective - MARGIN) open.push(child);
     }
-    if (best.isThere && visited % YIELD_EVERY === YIELD_EVERY - 1) {
+    work += root.size * (1 + 2 * Math.min(TRIED, questions.length));
+    if (best.isThere && work - told > YIELD_WORK) {
+      told = work;
       const plan = best.describe(floatingBound([...open.nodes, ...ended]));
       yield { plan, bound: plan.objectiveBound };
     }

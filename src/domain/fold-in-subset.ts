@@ -112,6 +112,11 @@ export class Subset {
     return this.opened * this.search.problem.worthOpening + (this.relaxation.isRanged ? this.search.least : 0);
   }
 
+  /** Cells of the tableau where nothing is decided. */
+  get size(): number {
+    return this.relaxation.program.matrix.length;
+  }
+
   /** mg, of the linear relaxation. */
   get objective(): number {
     return this.simplex.objective * this.search.greatest - this.fixed;
