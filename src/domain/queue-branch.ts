@@ -90,13 +90,31 @@ export class PricedSearch {
       this.best = point.value;
       this.taken = point.taken;
     }
-    const ways = point.value >= node.bound - REACHED / 10 ? [] : this.branch(node, point);
+    const isDone = point.value >= node.bound - REACHED / 10;
+    if (!isDone) this.closeHopeless(node);
+    const ways = isDone ? [] : this.branch(node, point);
     if (ways === undefined) this.end(node.bound);
     this.spare.push(node.lp);
     const [one, other] = ways ?? [];
     if (one === undefined || other === undefined) return one ?? other;
     this.open.push(other);
     return one;
+  }
+
+  /** Candidates that would lower the bound to the best value or less: the cost of what is opened at least, and of opening. */
+  private closeHopeless({ lp, bound, columns, opened }: Node): void {
+    const { countSlack } = this.batch.relaxation;
+    const opening = this.worth + (countSlack === -1 ? 0 : lp.multiplier(countSlack));
+    const room = opened < this.batch.ask.maximumBuckets ? bound - this.best - REACHED : 0;
+    for (let k = 0; k < columns.length; k++) {
+      const cost = columns[k] === k ? lp.multiplier(k) : 0;
+      if (cost <= 0) continue;
+      const { least, partly, most } = this.limitsOf(k);
+      const lower = partly >= least ? least : most;
+      if (Math.min(cost * most, cost * lower + opening * (1 - lower / most)) < room) continue;
+      lp.setBounds(k, 0, 0);
+      columns[k] = -1;
+    }
   }
 
   private branch(node: Node, { candidate, row }: Point): (Node | undefined)[] | undefined {
@@ -149,7 +167,10 @@ export class PricedSearch {
     const lp = this.spare.pop() ?? this.blank();
     lp.copyFrom(node.lp);
     decide(lp);
-    return this.settle({ lp, bound: node.bound, opened, columns }, this.best + REACHED);
+    return this.settle(
+      { lp, bound: node.bound, opened, columns: columns === node.columns ? columns.slice() : columns },
+      this.best + REACHED,
+    );
   }
 
   /** Solves it; undefined when there is no plan in it above the cutoff. */
