@@ -7,10 +7,16 @@ export interface Column {
   masses: readonly number[];
 }
 
+/** mg that the best mix is worth, and the prices at which no plan of it is worth changing. */
+export interface Mix {
+  prices: Float64Array<ArrayBuffer>;
+  value: number;
+}
+
 const MOST_TURNS = 20;
 
-/** Prices of the buckets in the best mix of these plans: each batch has one whole plan's worth, no bucket gives too much. */
-export function solveMaster(columns: readonly (readonly Column[])[], usable: readonly number[]): Float64Array {
+/** The best mix of these plans: each batch has one whole plan's worth, no bucket gives too much. */
+export function solveMaster(columns: readonly (readonly Column[])[], usable: readonly number[]): Mix {
   const rows = contested(columns, usable);
   const all = columns.flatMap((list, place) => list.map((column) => ({ ...column, place })));
   const height = columns.length + rows.size;
@@ -42,7 +48,7 @@ export function solveMaster(columns: readonly (readonly Column[])[], usable: rea
     const price = (lp.multiplier(all.length + row) * unit) / (usable[bucket] as number);
     prices[bucket] = Math.min(1, Math.max(0, price));
   });
-  return prices;
+  return { prices, value: lp.objective * unit };
 }
 
 /** Bucket → row, of those that the batches could ask too much of. */

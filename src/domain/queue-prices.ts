@@ -1,14 +1,17 @@
 import { type QueueBatch, widestLimits } from './queue-batch.ts';
 import { PricedSearch } from './queue-branch.ts';
 import { type Column, solveMaster } from './queue-master.ts';
+import type { BatchPlan } from './queue-round.ts';
 
 /** How much of the new prices is mixed into the best ones: whole steps of theirs swing. */
-const MIXED = 0.5;
+const MIXED = 0.4;
 const FIRST_NODES = 100;
 const MOST_NODES = 4000;
 const NODES_A_STEP = 100;
 /** Of the bound: rounds that lower it by less stand still. */
 const STILL = 2e-5;
+/** …and how near to the bound the best mix of plans then comes: it is no longer the prices that keep it up. */
+const MIX_NEAR = 5e-3;
 /** mg by which a batch's bound may be off before it is sought anew. */
 const NEAR = 200;
 
@@ -47,26 +50,32 @@ export class QueuePrices {
     this.known = batches.map(() => undefined);
   }
 
-  /** A plan of a batch, as mg of each bucket and its value without prices. */
-  add(place: number, column: Column): void {
-    this.columns[place]?.push(column);
+  /** A plan that was found otherwise. */
+  add(place: number, { value, takings }: BatchPlan): void {
+    const buckets = takings.map(({ bucket }) => bucket);
+    this.columns[place]?.push({ value, buckets, masses: takings.map(({ mass }) => mass) });
   }
 
-  /** Yields after each batch; ends when the prices stand and each batch is known well enough. */
+  /** Yields often; ends when the prices stand and each batch is known well enough. */
   *rounds(): Generator<void, void> {
-    let next: Float64Array = new Float64Array(this.prices.length);
+    let mix = { prices: new Float64Array(this.prices.length), value: 0 };
     for (; ; this.round++) {
       const before = this.bound;
-      const mixed =
-        this.round < 2 ? next : this.prices.map((price, i) => price + MIXED * ((next[i] as number) - price));
+      const count = this.columnCount;
+      const mixed = this.prices.map((price, i) => price + MIXED * ((mix.prices[i] as number) - price));
       yield* this.ask(mixed);
-      if (this.round > 2 && this.bound >= before * (1 - STILL)) {
-        if (this.nodes >= MOST_NODES) return;
+      const isStill = this.bound >= before * (1 - STILL);
+      const isOld = this.columnCount === count;
+      if (isStill && isOld && this.nodes >= MOST_NODES) return;
+      if (isStill && (isOld || this.bound - mix.value < MIX_NEAR * this.bound) && this.nodes < MOST_NODES)
         this.nodes *= 2;
-      }
-      next = solveMaster(this.columns, this.usable);
+      mix = solveMaster(this.columns, this.usable);
       yield;
     }
+  }
+
+  private get columnCount(): number {
+    return this.columns.reduce((sum, list) => sum + list.length, 0);
   }
 
   private *ask(prices: Float64Array): Generator<void, void> {

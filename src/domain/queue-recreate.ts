@@ -38,6 +38,12 @@ export class QueueRecreation {
   planAll(): void {
     const order = [...this.batches].sort((a, b) => b.search.greatest - a.search.greatest || a.place - b.place);
     for (const { place } of order) this.plan(place, 1);
+    this.offer(this.batches.keys());
+  }
+
+  /** Plans that go together make prices that let them. */
+  private offer(places: Iterable<number>): void {
+    for (const place of places) this.pricing.add(place, this.shelf.plans[place] as BatchPlan);
   }
 
   /** One batch's plan from what is left, at a part of the prices. */
@@ -70,7 +76,9 @@ export class QueueRecreation {
       this.plan(place, part);
       yield;
     }
-    if (this.value >= before) return this.value > before;
+    const after = this.value;
+    if (after > before) this.offer(kept.keys());
+    if (after >= before) return after > before;
     for (const place of kept.keys()) this.shelf.takeBack(place);
     kept.forEach((plan, place) => this.shelf.put(place, plan));
     return false;

@@ -12,7 +12,7 @@ import { QueueShelf } from './queue-shelf.ts';
 const IDLE_EACH = 12;
 const IDLE_LEAST = 60;
 /** Rounds of prices before the first plans. */
-const FIRST_ROUNDS = 3;
+const FIRST_ROUNDS = 1;
 
 /** Prices first, then plans at these prices; then better prices and better plans by turns. */
 export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePlans> {
