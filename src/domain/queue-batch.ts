@@ -1,6 +1,6 @@
 import { type Search, prepareSearch } from './fold-in-candidates.ts';
 import type { FoldInProblem } from './fold-in.ts';
-import type { Milligrams } from './mass.ts';
+import { type Milligrams, WHOLE } from './mass.ts';
 import { type Relaxation, relaxationOf } from './fold-in-program.ts';
 import type { QueueProblem } from './plan-queue.ts';
 
@@ -18,6 +18,8 @@ export interface QueueBatch {
   /** mg, on a step: the least that is taken of a bucket without emptying it; and the least that may be left to empty. */
   minimum: number;
   leastRest: number;
+  /** Of each component, mg: m_j = min(m, M·t_j) at the least batch; fresh ink of it is none or at least this. */
+  leastFresh: Float64Array;
 }
 
 /** How an opened candidate may give, mg: from `least` to `partly`, or `most` whole. Never when `most` is 0. */
@@ -44,6 +46,7 @@ export function prepareBatch(queue: QueueProblem, place: number): QueueBatch {
     caps: Float64Array.from(search.candidates, ({ canEmpty, usable, most }) => (canEmpty ? usable : most)),
     minimum: Math.max(1, Math.ceil(ask.minimumFromBucket / ask.readability)) * ask.readability,
     leastRest,
+    leastFresh: search.target.map((ppb) => Math.min(ask.minimumFresh, Math.floor((ask.batch.minimum * ppb) / WHOLE))),
   };
 }
 

@@ -156,7 +156,7 @@ export class PricedSearch {
   private branchFresh(node: Node, r: number): (Node | undefined)[] {
     const { rows, firstSlack } = this.batch.relaxation;
     const { component, most } = rows[r] as (typeof rows)[number];
-    const enough = (this.batch.search.leastFresh[component] as number) / this.unit;
+    const enough = (this.batch.leastFresh[component] as number) / this.unit;
     return [
       this.child(node, node.opened, node.columns, (lp) => lp.setBounds(firstSlack + r, 0, 0)),
       this.child(node, node.opened, node.columns, (lp) => lp.setBounds(firstSlack + r, enough, most / WHOLE)),

@@ -59,7 +59,7 @@ function shortRow({ batch, unit }: PricedSearch, { lp }: Node): number {
   rows.forEach(({ kind, component }, r) => {
     if (kind !== 'fresh') return;
     const fresh = lp.value(firstSlack + r);
-    const short = Math.min(fresh, (batch.search.leastFresh[component] as number) / unit - fresh);
+    const short = Math.min(fresh, (batch.leastFresh[component] as number) / unit - fresh);
     if (short <= most) return;
     most = short;
     found = r;
