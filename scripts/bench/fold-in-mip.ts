@@ -48,8 +48,15 @@ export function foldInMip(problem: FoldInProblem): string {
     const sum = [...held, `+ y${j}`].join(' ');
     rows.push(`${sum} - ${share(id) + tau(id)} m <= 0`, `${sum} - ${Math.max(0, share(id) - tau(id))} m >= 0`);
     if (share(id) === 0) return void bounds.push(`y${j} = 0`);
-    const enough = Math.min(grams(problem.minimumFresh), least * share(id));
-    rows.push(`y${j} - ${enough} w${j} >= 0`, `y${j} - ${greatest * (share(id) + tau(id))} w${j} <= 0`);
+    rows.push(`y${j} - ${greatest * (share(id) + tau(id))} w${j} <= 0`);
+    const minimumFresh = grams(problem.minimumFresh);
+    if (ranged && minimumFresh > least * share(id)) {
+      // Either of the two that the least fresh weight is the lesser of, chosen by k.
+      rows.push(`y${j} - ${minimumFresh} w${j} + ${minimumFresh} k${j} >= 0`);
+      const most = greatest * share(id);
+      rows.push(`y${j} - ${share(id)} m - ${most} k${j} - ${most} w${j} >= ${-2 * most}`);
+      binaries.push(`k${j}`);
+    } else rows.push(`y${j} - ${Math.min(minimumFresh, least * share(id))} w${j} >= 0`);
     binaries.push(`w${j}`);
   });
   rows.push(`${[...total, ...components.map((_, j) => `+ y${j}`)].join(' ')} - m = 0`);

@@ -1,5 +1,5 @@
 import type { Candidate, Search } from './fold-in-candidates.ts';
-import { type Decision, type Decisions, type Fresh, isOpened } from './fold-in-decisions.ts';
+import { type Decision, type Decisions, isOpened, leastFreshOf } from './fold-in-decisions.ts';
 import { type Relaxation, type Row, deviationIn } from './fold-in-program.ts';
 import { WHOLE } from './mass.ts';
 
@@ -24,18 +24,18 @@ export interface Bound {
  */
 export function boundOf(search: Search, relaxation: Relaxation, { decisions, multipliers }: Certificate): Bound {
   const { rows, deviating } = relaxation;
-  const range = search.greatest - search.least;
   let value = relaxation.isRanged ? -search.least : 0;
   let ofBatch = -1;
   for (let r = 0; r < rows.length; r++) {
     const pi = multipliers[r] as number;
     if (pi === 0) continue;
     const row = rows[r] as Row;
-    const { least, most } = slackLimits(search, row, decisions.fresh[row.component]);
+    const { least, most } = slackLimits(search, row, decisions);
     value += (pi * row.ppb * search.least) / WHOLE - pi * (pi > 0 ? least : most);
     ofBatch += (pi * row.ppb) / WHOLE;
   }
-  if (relaxation.isRanged) value += Math.max(0, ofBatch) * range;
+  if (relaxation.isRanged)
+    value += ofBatch * ((ofBatch > 0 ? decisions.batch.greatest : decisions.batch.least) - search.least);
   for (const j of deviating) {
     let gain = 0;
     for (let r = 0; r < rows.length; r++) {
@@ -75,11 +75,12 @@ function gainsOf({ program, rows }: Relaxation, multipliers: Float64Array, candi
 }
 
 /** mg between which a slack lies. */
-export function slackLimits(search: Search, row: Row, fresh: Fresh | undefined): { least: number; most: number } {
+export function slackLimits(search: Search, row: Row, decisions: Decisions): { least: number; most: number } {
   const most = (row.most * search.greatest) / WHOLE;
+  const fresh = decisions.fresh[row.component];
   if (row.kind !== 'fresh' || fresh === 'free') return { least: 0, most };
   if (fresh === 'none') return { least: 0, most: 0 };
-  const least = search.leastFresh[row.component] as number;
+  const least = leastFreshOf(search, row.component, decisions);
   return { least, most: Math.max(least, most) };
 }
 

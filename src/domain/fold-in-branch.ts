@@ -1,6 +1,7 @@
 import type { Candidate } from './fold-in-candidates.ts';
-import { type Change, type Decision, limitsOf, mostOf } from './fold-in-decisions.ts';
+import { type Change, type Decision, leastFreshOf, limitsOf, mostOf } from './fold-in-decisions.ts';
 import type { Certificate } from './fold-in-bound.ts';
+import { WHOLE } from './mass.ts';
 import { NOTHING, type Node, type Subset, nodeOf } from './fold-in-subset.ts';
 
 /** What keeps a relaxation from being a plan, and the ways to decide it: of a bucket or of a component's fresh ink. */
@@ -34,15 +35,41 @@ export function questionsOf(subset: Subset): Question[] {
     }
   });
   search.components.forEach((_, j) => {
-    const least = search.leastFresh[j] as number;
-    if (search.target[j] === 0 || decisions.fresh[j] !== 'free') return;
+    if (search.target[j] === 0 || decisions.fresh[j] === 'none') return;
     const mass = subset.freshOf(j);
-    if (mass < NOTHING || mass > least - NOTHING) return;
+    if (mass < NOTHING) return;
+    const least = leastFreshOf(search, j, decisions);
+    if (decisions.fresh[j] === 'some' || mass > least - NOTHING) {
+      if (subset.relaxation.isRanged && isTooLittle(subset, j, mass)) questions.push(...halved(subset, j));
+      return;
+    }
     const ways = (['some', 'none'] as const).map((to) => ({ component: j, to }));
     // Little ink, but it decides about whole buckets.
     questions.push({ ways, nearness: mass / least, weight: search.greatest });
   });
   return questions;
+}
+
+/** Less than can be weighed of this batch, though not of the least one. */
+function isTooLittle({ search, batch }: Subset, j: number, mass: number): boolean {
+  const least = leastFreshOf(search, j, { batch: { least: batch, greatest: batch } });
+  const ofOneStep = (search.problem.readability * (search.target[j] as number)) / WHOLE;
+  return mass < least - ofOneStep - NOTHING;
+}
+
+/** The range in two, where m = M·t_j, or else in its middle. */
+function halved({ search, decisions }: Subset, j: number): Question[] {
+  const { least, greatest } = decisions.batch;
+  const d = search.problem.readability;
+  const turn = (search.problem.minimumFresh * WHOLE) / (search.target[j] as number);
+  const middle = turn > least + d && turn < greatest - d ? turn : (least + greatest) / 2;
+  const at = Math.floor(middle / d) * d;
+  if (at <= least || at >= greatest) return [];
+  const ways = [
+    { least: at, greatest },
+    { least, greatest: at },
+  ].map((batch) => ({ batch }));
+  return [{ ways, nearness: 0.5, weight: search.greatest }];
 }
 
 function opening(candidate: Candidate, i: number): Change {

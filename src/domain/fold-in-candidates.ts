@@ -22,8 +22,6 @@ export interface Search {
   target: Float64Array;
   lower: Float64Array;
   upper: Float64Array;
-  /** m_j in mg: fresh ink of a component is nothing, or at least this. */
-  leastFresh: Float64Array;
   candidates: readonly Candidate[];
   /** Why a bucket gives nothing, or less than it costs to open; the latter may still serve a plan. */
   excluded: FoldInPlan['excluded'];
@@ -66,7 +64,6 @@ function rowsOf(problem: FoldInProblem, kept: readonly Omit<Candidate, 'shares'>
     target: of(share),
     lower: of((id) => Math.max(0, share(id) - tau(id))),
     upper: of((id) => share(id) + tau(id)),
-    leastFresh: leastFreshOf(problem, components, least),
     candidates: kept.map((candidate): Candidate => {
       const shares = new Float64Array(components.length);
       for (const [id, ppb] of compositionAt(problem, candidate.index)) shares[places.get(id) as number] = ppb / WHOLE;
@@ -75,13 +72,6 @@ function rowsOf(problem: FoldInProblem, kept: readonly Omit<Candidate, 'shares'>
     least,
     greatest,
   };
-}
-
-/** m_j = min(m, M·t_j) in mg, of a batch of `batch` mg. */
-export function leastFreshOf(problem: FoldInProblem, components: readonly string[], batch: number): Float64Array {
-  return Float64Array.from(components, (id) =>
-    Math.min(problem.minimumFresh, Math.floor((batch * (problem.target.get(id) ?? 0)) / WHOLE)),
-  );
 }
 
 function compositionAt(problem: FoldInProblem, index: number): ReadonlyMap<string, number> {

@@ -37,7 +37,7 @@ function relax(given: FoldInProblem, buckets: readonly Decision[] = ['free', 'fr
   const search = prepareSearch(given);
   const relaxation = relaxationOf(search);
   const subset = new Subset({ search, relaxation });
-  subset.decide({ buckets, fresh: search.components.map(() => 'free') });
+  subset.decide({ ...subset.decisions, buckets });
   subset.solve();
   const { certificate } = subset;
   const exact = (other: Certificate) => certify(search, relaxation, other);

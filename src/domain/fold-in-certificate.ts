@@ -1,6 +1,6 @@
 import type { Search } from './fold-in-candidates.ts';
 import type { Certificate } from './fold-in-bound.ts';
-import { type Decision, type Fresh, isOpened } from './fold-in-decisions.ts';
+import { type Decision, type Decisions, isOpened, leastFreshOf } from './fold-in-decisions.ts';
 import { type Relaxation, type Row, deviationIn } from './fold-in-program.ts';
 
 /** Multipliers are taken as whole numbers of 1/SCALE: any multipliers give a bound, so rounding them loses no proof. */
@@ -15,6 +15,7 @@ const UNIT = SCALE * PPB;
  */
 export function certify(search: Search, { rows, deviating }: Relaxation, certificate: Certificate): number {
   const { problem } = search;
+  const { decisions } = certificate;
   const multipliers = Array.from(certificate.multipliers, (pi) => BigInt(Math.round(pi * Number(SCALE))));
   const least = BigInt(search.least);
   const greatest = BigInt(search.greatest);
@@ -22,17 +23,18 @@ export function certify(search: Search, { rows, deviating }: Relaxation, certifi
   let ofBatch = -UNIT;
   rows.forEach((row, r) => {
     const pi = multipliers[r] as bigint;
-    const slack = slackRange(search, row, certificate.decisions.fresh[row.component]);
+    const slack = slackRange(search, row, decisions);
     value += pi * BigInt(row.ppb) * least - pi * (pi > 0n ? slack.least : slack.most);
     ofBatch += pi * BigInt(row.ppb);
   });
-  if (ofBatch > 0n) value += (greatest - least) * ofBatch;
+  if (greatest > least)
+    value += ofBatch * (BigInt(ofBatch > 0n ? decisions.batch.greatest : decisions.batch.least) - least);
   for (const j of deviating) {
     const gain = rows.reduce((sum, row, r) => sum - (multipliers[r] as bigint) * BigInt(deviationIn(row, j)), 0n);
     const edge = BigInt((gain > 0n ? search.upper[j] : search.lower[j]) as number) - BigInt(search.target[j] as number);
     value += gain * edge * greatest;
   }
-  const { opened, free } = scoresOf(search, rows, multipliers, certificate.decisions.buckets);
+  const { opened, free } = scoresOf(search, rows, multipliers, decisions.buckets);
   for (const score of opened) value += score;
   free.sort((a, b) => (a < b ? 1 : a > b ? -1 : 0));
   for (const score of free.slice(0, Math.max(0, problem.maximumBuckets - opened.length))) value += score;
@@ -40,11 +42,12 @@ export function certify(search: Search, { rows, deviating }: Relaxation, certifi
 }
 
 /** mg·ppb between which a slack lies. */
-function slackRange(search: Search, row: Row, fresh: Fresh | undefined): { least: bigint; most: bigint } {
+function slackRange(search: Search, row: Row, decisions: Decisions): { least: bigint; most: bigint } {
   const most = BigInt(row.most) * BigInt(search.greatest);
+  const fresh = decisions.fresh[row.component];
   if (row.kind !== 'fresh' || fresh === 'free') return { least: 0n, most };
   if (fresh === 'none') return { least: 0n, most: 0n };
-  const least = BigInt(search.leastFresh[row.component] as number) * PPB;
+  const least = BigInt(leastFreshOf(search, row.component, decisions)) * PPB;
   return { least, most: most > least ? most : least };
 }
 

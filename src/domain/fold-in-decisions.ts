@@ -1,4 +1,5 @@
 import type { Candidate, Search } from './fold-in-candidates.ts';
+import { WHOLE } from './mass.ts';
 
 /** What the search has decided of a bucket: 'open' is in part or emptied, 'free' is nothing yet. */
 export type Decision = 'free' | 'closed' | 'open' | 'partial' | 'emptied';
@@ -8,21 +9,37 @@ export type Fresh = 'free' | 'none' | 'some';
 export interface Decisions {
   buckets: readonly Decision[];
   fresh: readonly Fresh[];
+  /** mg between which the batch lies. */
+  batch: { least: number; greatest: number };
 }
 
 /** One more decision. */
-export type Change = { bucket: number; to: Decision } | { component: number; to: Fresh };
+export type Change =
+  { bucket: number; to: Decision } | { component: number; to: Fresh } | { batch: Decisions['batch'] };
 
-export function withChange({ buckets, fresh }: Decisions, change: Change): Decisions {
-  if ('bucket' in change) return { buckets: buckets.with(change.bucket, change.to), fresh };
-  return { buckets, fresh: fresh.with(change.component, change.to) };
+export function withChange(decisions: Decisions, change: Change): Decisions {
+  const { buckets, fresh } = decisions;
+  if ('bucket' in change) return { ...decisions, buckets: buckets.with(change.bucket, change.to) };
+  if ('component' in change) return { ...decisions, fresh: fresh.with(change.component, change.to) };
+  return { ...decisions, batch: change.batch };
+}
+
+/** m_j = min(m, M·t_j) in mg of the least batch that is left: fresh ink of a component is nothing, or at least this. */
+export function leastFreshOf({ problem, target }: Search, j: number, { batch }: Pick<Decisions, 'batch'>): number {
+  return Math.min(problem.minimumFresh, Math.floor((batch.least * (target[j] as number)) / WHOLE));
+}
+
+export function undecided({ candidates, components, least, greatest }: Search): Decisions {
+  return {
+    buckets: candidates.map((): Decision => 'free'),
+    fresh: components.map((): Fresh => 'free'),
+    batch: { least, greatest },
+  };
 }
 
 export function startOf(search: Search): Decisions {
-  return {
-    buckets: search.candidates.map((candidate): Decision => (candidate.mustUse ? 'emptied' : 'free')),
-    fresh: search.components.map(() => 'free'),
-  };
+  const buckets = search.candidates.map((candidate): Decision => (candidate.mustUse ? 'emptied' : 'free'));
+  return { ...undecided(search), buckets };
 }
 
 export function isOpened(decision: Decision | undefined): boolean {

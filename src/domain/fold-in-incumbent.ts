@@ -1,5 +1,5 @@
 import type { FoldInPlan } from './fold-in.ts';
-import { type Search, leastFreshOf } from './fold-in-candidates.ts';
+import type { Search } from './fold-in-candidates.ts';
 import { FoldInError } from './fold-in-check.ts';
 import { mostOf } from './fold-in-decisions.ts';
 import { planNear } from './fold-in-dive.ts';
@@ -40,14 +40,6 @@ export class Incumbent {
       if (mostOf(candidate) - search.problem.worthOpening <= this.enough) return;
       this.offer(planNear(rootOf({ ...search, candidates: [candidate] }), this.enough));
     }
-  }
-
-  /** In a range the least fresh weight grows with the batch: with the greatest one's, what is found can be weighed. */
-  offerWeighable(): void {
-    const { search } = this;
-    if (search.greatest === search.least) return;
-    const leastFresh = leastFreshOf(search.problem, search.components, search.greatest);
-    this.offer(planNear(rootOf({ ...search, leastFresh }), this.enough));
   }
 
   offer(found: Rounded | undefined): void {

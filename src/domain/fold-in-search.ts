@@ -27,7 +27,6 @@ export function* branchAndBound(whole: Search): Generator<Progress, FoldInPlan> 
   const all = rootOf(whole);
   const best = new Incumbent(whole);
   best.offer(planNear(all, best.enough));
-  best.offerWeighable();
   best.offerSingles();
   const root = withoutHopelessCandidates(all, best);
   let subset: Subset | undefined;
@@ -91,8 +90,9 @@ function isHopeless({ bound, certificate }: Node, i: number, best: Incumbent): b
 }
 
 function withoutHopeless(node: Node, best: Incumbent): Node['certificate']['decisions'] {
-  const { buckets, fresh } = node.certificate.decisions;
-  return { buckets: buckets.map((to, i): Decision => (isHopeless(node, i, best) ? 'closed' : to)), fresh };
+  const { decisions } = node.certificate;
+  const buckets = decisions.buckets.map((to, i): Decision => (isHopeless(node, i, best) ? 'closed' : to));
+  return { ...decisions, buckets };
 }
 
 function floatingBound(frontier: readonly Node[]): number {

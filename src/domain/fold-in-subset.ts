@@ -8,6 +8,7 @@ import {
   isOpened,
   limitsOf,
   startOf,
+  undecided,
   withChange,
 } from './fold-in-decisions.ts';
 import { type Relaxation, type Row, relaxationOf } from './fold-in-program.ts';
@@ -43,10 +44,7 @@ export class Subset {
       return;
     }
     this.simplex = new DualSimplex(of.relaxation.program, of.search.candidates.length);
-    this.decisions = {
-      buckets: of.search.candidates.map((): Decision => 'free'),
-      fresh: of.search.components.map(() => 'free'),
-    };
+    this.decisions = undecided(of.search);
   }
 
   copyFrom(other: Subset): void {
@@ -58,16 +56,17 @@ export class Subset {
 
   /** Decides what `decisions` have decided beyond these. */
   decide(decisions: Decisions): void {
-    decisions.buckets.forEach((to, bucket) => this.decisions.buckets[bucket] !== to && this.change({ bucket, to }));
-    decisions.fresh.forEach(
-      (to, component) => this.decisions.fresh[component] !== to && this.change({ component, to }),
-    );
+    const { buckets, fresh, batch } = decisions;
+    if (batch !== this.decisions.batch) this.change({ batch });
+    buckets.forEach((to, bucket) => this.decisions.buckets[bucket] !== to && this.change({ bucket, to }));
+    fresh.forEach((to, component) => this.decisions.fresh[component] !== to && this.change({ component, to }));
   }
 
   change(change: Change): void {
     if ('bucket' in change) this.changeBucket(change.bucket, change.to);
-    else this.changeFresh(change.component, change.to);
     this.decisions = withChange(this.decisions, change);
+    if ('component' in change) this.limitFresh(change.component);
+    if ('batch' in change) this.limitBatch();
   }
 
   private changeBucket(i: number, to: Decision): void {
@@ -93,10 +92,21 @@ export class Subset {
     if (countSlack !== -1) simplex.setBounds(countSlack, this.opened, search.problem.maximumBuckets);
   }
 
-  private changeFresh(j: number, to: Decisions['fresh'][number]): void {
+  private limitFresh(j: number): void {
     const { search, relaxation } = this;
-    const { least, most } = slackLimits(search, relaxation.rows[j] as Row, to);
+    const { least, most } = slackLimits(search, relaxation.rows[j] as Row, this.decisions);
     this.simplex.setBounds(relaxation.firstSlack + j, least / search.greatest, most / search.greatest);
+  }
+
+  /** The least that can be weighed of a component changes with the least batch. */
+  private limitBatch(): void {
+    const { search, relaxation } = this;
+    const { batch, fresh } = this.decisions;
+    if (!relaxation.isRanged) return;
+    const column = relaxation.firstSlack - 1;
+    const beyond = (mass: number) => (mass - search.least) / search.greatest;
+    this.simplex.setBounds(column, beyond(batch.least), beyond(batch.greatest));
+    fresh.forEach((to, j) => to === 'some' && this.limitFresh(j));
   }
 
   /** @param cutoff mg: an objective below which nothing is sought */
