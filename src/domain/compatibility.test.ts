@@ -64,13 +64,30 @@ const anyParent = fc.record<Parent>({
   restrictions: fc.subarray(['latex', 'phthalates']),
   hazards: fc.subarray(['Irritant']),
   generation: fc.nat(3),
+  lots: fc.subarray(['lot 1', 'lot 2', 'lot 3']),
 });
 
 describe('what a mix inherits', () => {
   test('is the worst of its parents in everything', () => {
     const mixed = inherit([
-      { grade: 'untouched', useBy: '2026-06-30', cureC: 130, restrictions: ['latex'], hazards: [], generation: 0 },
-      { grade: 'returned', useBy: '2026-01-01', cureC: 160, restrictions: [], hazards: ['Irritant'], generation: 2 },
+      {
+        grade: 'untouched',
+        useBy: '2026-06-30',
+        cureC: 130,
+        restrictions: ['latex'],
+        hazards: [],
+        generation: 0,
+        lots: ['b', 'a'],
+      },
+      {
+        grade: 'returned',
+        useBy: '2026-01-01',
+        cureC: 160,
+        restrictions: [],
+        hazards: ['Irritant'],
+        generation: 2,
+        lots: ['b'],
+      },
     ]);
     expect(mixed).toEqual({
       grade: 'returned',
@@ -79,6 +96,7 @@ describe('what a mix inherits', () => {
       restrictions: ['latex'],
       hazards: ['Irritant'],
       generation: 2,
+      lots: ['a', 'b'],
     });
   });
 

@@ -81,13 +81,15 @@ export interface Parent {
   restrictions: readonly string[];
   hazards: readonly string[];
   generation: number;
+  /** Ids of the lots in it, as far as they are known. */
+  lots?: readonly string[];
 }
 
-export type Inherited = Parent;
+export type Inherited = Required<Parent>;
 
 const WORST_FIRST: readonly Grade[] = ['unknown', 'assumed', 'returned', 'untouched'];
 
-/** A mix takes the worst grade, every restriction and hazard, the earliest use-by, the highest cure and generation. */
+/** A mix takes the worst grade, every restriction, hazard and lot, the earliest use-by, the highest cure and generation. */
 export function inherit(parents: readonly Parent[]): Inherited {
   const dates = parents.flatMap((parent) => parent.useBy ?? []).sort();
   const cures = parents.flatMap((parent) => parent.cureC ?? []);
@@ -98,5 +100,11 @@ export function inherit(parents: readonly Parent[]): Inherited {
     restrictions: [...new Set(parents.flatMap((parent) => parent.restrictions))].sort(),
     hazards: [...new Set(parents.flatMap((parent) => parent.hazards))].sort(),
     generation: Math.max(0, ...parents.map((parent) => parent.generation)),
+    lots: [...new Set(parents.flatMap((parent) => parent.lots ?? []))].sort(),
   };
+}
+
+/** What a tub keeps of it; its lots are told by its additions and parents. */
+export function keptOnTub({ grade, useBy, cureC, restrictions, hazards, generation }: Inherited) {
+  return { grade, useBy, cureC, restrictions, hazards, generation };
 }

@@ -1,7 +1,7 @@
 import type { Addition, Filled } from '#contract/operation-bodies.ts';
 import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
-import { type Parent, inherit } from '#domain/compatibility.ts';
+import { type Parent, inherit, keptOnTub } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import { type Milligrams, type PartsPerBillion, WHOLE } from '#domain/mass.ts';
 import { changeTub, correctedTime } from './overlay-bucket.ts';
@@ -52,7 +52,7 @@ function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: Overlay
   const { body } = operation;
   const formula = facts.formulas.get(body.formulaId);
   const revision = formula?.revisions.find((entry) => entry.revision === body.revision);
-  const inherited = inherit(body.additions.map((addition) => parentOf(addition, shown, facts)));
+  const inherited = keptOnTub(inherit(body.additions.map((addition) => parentOf(addition, shown, facts))));
   return {
     id: tub.bucketId,
     code: tub.code,

@@ -1,5 +1,6 @@
 import { Mass } from '#components/ui/Mass.tsx';
 import { Strip } from '#components/ui/Strip.tsx';
+import { useStation } from '#components/ui/station-context.ts';
 import { LeftOutList } from './LeftOutList.tsx';
 import { PlanCard } from './PlanCard.tsx';
 import { planFacts } from './describe-plan.ts';
@@ -17,6 +18,7 @@ interface Props {
 
 /** The leftovers that this batch could use up: one plan as a picture, the others as rows. */
 export function FoldIn({ facts, state, chosen, onChoose, onRefuse }: Props) {
+  const { station } = useStation();
   if (state.phase === 'waiting') return <p className="ink2">Type a mass to see which leftovers fit.</p>;
   if (state.phase === 'solving')
     return (
@@ -57,7 +59,7 @@ export function FoldIn({ facts, state, chosen, onChoose, onRefuse }: Props) {
               <Strip lab={first?.lab ?? null} hiding={first?.hiding ?? 0} />
               <div>
                 <b>{suggestion.plan.fromBuckets.map((from) => buckets.get(from.bucketId)?.name).join(' and ')}</b>
-                <small className="ink2">{planFacts(suggestion)[0]?.text}</small>
+                <small className="ink2">{planFacts(suggestion, station.shop.locale)[0]?.text}</small>
               </div>
               <span className="num">
                 <Mass mg={suggestion.plan.reused} />

@@ -57,7 +57,7 @@ export function PlanCard({
         })}
       </ul>
       <p className="facts-line">
-        {planFacts(suggestion).map((fact) => (
+        {planFacts(suggestion, station.shop.locale).map((fact) => (
           <span key={fact.text} className={`badge ${fact.glyph}`}>
             {fact.text}
           </span>

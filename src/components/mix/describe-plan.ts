@@ -13,17 +13,22 @@ export function planTitle(plan: FoldInPlan, buckets: ReadonlyMap<string, Row<'bu
 }
 
 /** Short badges with their glyph: kind, what is emptied, how sure the figure is. */
-export function planFacts(suggestion: Suggestion): readonly { glyph: string; text: string }[] {
+export function planFacts(suggestion: Suggestion, locale: string): readonly { glyph: string; text: string }[] {
   const { plan, problem } = suggestion;
   const emptied = plan.fromBuckets.filter((from) => from.empties).length;
   const facts = [
     { glyph: 'g-ok', text: suggestion.kind === 'same-recipe' ? 'Same recipe' : deviationInWords(plan, problem) },
   ];
   if (emptied > 0) facts.push({ glyph: 'g-pail', text: emptied === 1 ? 'Tub emptied' : `${emptied} tubs emptied` });
-  facts.push(
-    plan.status === 'best' ? { glyph: 'g-ok', text: 'Best possible' } : { glyph: 'g-ask', text: 'Not proven best' },
-  );
+  facts.push(sureness(plan, locale));
   return facts;
+}
+
+/** What the bound proves of the figure. */
+function sureness(plan: FoldInPlan, locale: string): { glyph: string; text: string } {
+  if (plan.status === 'best') return { glyph: 'g-ok', text: 'Best possible' };
+  const more = formatGrams((plan.objectiveBound - plan.objective) as Milligrams, 1000 as Milligrams, locale);
+  return { glyph: 'g-ask', text: `At most ${more} g more is possible` };
 }
 
 /** The worst component's deviation beside its own limit: "Off by 1.6 of 2 %". */

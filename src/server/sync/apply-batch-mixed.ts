@@ -1,5 +1,5 @@
 import type { Addition, Filled, OperationBody } from '#contract/operation-bodies.ts';
-import { inherit } from '#domain/compatibility.ts';
+import { inherit, keptOnTub } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import type { Milligrams } from '#domain/mass.ts';
 import { moveBucket, requireBucket } from '#server/repositories/buckets.ts';
@@ -27,7 +27,7 @@ export async function applyBatchMixed(context: ApplyContext, body: BatchMixed): 
   for (const source of sources)
     if (source.bucket !== undefined) n = await takeFrom(context, source.bucket.id, source.addition, n);
   const mixture = mixtureOf(sources);
-  const inherited = inherit(sources);
+  const inherited = keptOnTub(inherit(sources));
   for (const tub of body.filled) {
     await insertBucket(context, { ...tubOf(context, body, tub), ...inherited, ...revision, composition: mixture }, n++);
     await insertParents(context, tub, sources);
