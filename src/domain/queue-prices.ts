@@ -12,8 +12,8 @@ const NODES_A_STEP = 100;
 const STILL = 2e-5;
 /** …and how near to the bound the best mix of plans then comes: it is no longer the prices that keep it up. */
 const MIX_NEAR = 5e-3;
-/** mg by which a batch's bound may be off before it is sought anew. */
-const NEAR = 200;
+/** mg by which a batch's bound may be off before it is sought anew, at first. */
+const FIRST_NEAR = 200;
 
 /** What was last found of a batch, and at which prices. */
 interface Known {
@@ -38,6 +38,7 @@ export class QueuePrices {
   private readonly columns: Column[][];
   private readonly known: (Known | undefined)[];
   private nodes = FIRST_NODES;
+  private near = FIRST_NEAR;
 
   constructor(
     private readonly batches: readonly QueueBatch[],
@@ -67,11 +68,15 @@ export class QueuePrices {
       const isStill = this.bound >= before * (1 - STILL);
       const isOld = this.columnCount === count;
       if (isStill && isOld && this.nodes >= MOST_NODES) return;
-      if (isStill && (isOld || this.bound - mix.value < MIX_NEAR * this.bound) && this.nodes < MOST_NODES)
-        this.nodes *= 2;
+      if (isStill && (isOld || this.bound - mix.value < MIX_NEAR * this.bound)) this.lookCloser();
       mix = solveMaster(this.columns, this.usable);
       yield;
     }
+  }
+
+  private lookCloser(): void {
+    this.nodes = Math.min(MOST_NODES, 2 * this.nodes);
+    this.near /= 4;
   }
 
   private get columnCount(): number {
@@ -98,8 +103,8 @@ export class QueuePrices {
     const known = this.known[batch.place];
     if (known !== undefined) {
       const bound = known.bound + shiftOf(batch, known.prices, prices);
-      const isWell = known.nodes >= this.nodes || known.bound - known.floor < NEAR;
-      if (isWell && bound - floor < known.bound - known.floor + NEAR) return bound;
+      const isWell = known.nodes >= this.nodes || known.bound - known.floor < this.near;
+      if (isWell && bound - floor < known.bound - known.floor + this.near) return bound;
     }
     const search = new PricedSearch(batch, prices, widestLimits(batch), floor);
     for (let nodes = 0; nodes < this.nodes && !search.run(NODES_A_STEP); nodes += NODES_A_STEP) yield;
