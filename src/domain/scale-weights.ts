@@ -2,6 +2,7 @@ import type { Composition } from './composition.ts';
 import type { Milligrams } from './mass.ts';
 import { type ScaleWeights, scaleWeightsOn } from './scale-weights-on.ts';
 
+export { type LetDown, proposeLetDown } from './propose-let-down.ts';
 export { type ScaleLimits, leastMassWithin } from './scale-limits.ts';
 export { smallestWeighableBatch } from './smallest-weighable-batch.ts';
 

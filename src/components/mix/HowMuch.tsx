@@ -62,7 +62,7 @@ function Sized({ facts, colour, useBucketId }: Props & { facts: MixFacts }) {
           <ScalePicker scales={facts.scales} amount={amount} onScale={setScaleId} />
         </div>
         <div className="stack right gap-4">
-          <TooSmall facts={facts} amount={amount} />
+          <TooSmall facts={facts} amount={amount} shelf={shelf} />
           <DoNotMix facts={facts} />
           <FoldIn
             facts={facts}
