@@ -55,50 +55,54 @@ export class DualSimplex extends Tableau {
 
   /** The column that comes in; columns that would pass their other bound on the way stand there instead. */
   private entering(r: number, below: boolean): number {
-    const variable = this.inside[r] as number;
+    const nearest = this.nearest(r * this.room, below);
+    if (nearest === -1 || this.isEnough(r, nearest, below)) return nearest;
     const at = r * this.room;
-    const helping = this.helping(at, below);
-    let n = this.nearest(helping, at);
-    for (let passed = 0; passed < helping.length; n = passed) {
-      const q = helping[n] as number;
-      const value = this.values[r] as number;
-      const missing = below ? (this.lower[variable] as number) - value : value - (this.upper[variable] as number);
+    const helping: number[] = [];
+    for (let k = 0; k < this.outside; k++) if (this.helps(at, k, below)) helping.push(k);
+    helping.sort((a, b) => this.compareRatios(a, b, at));
+    for (const q of helping) {
+      if (this.isEnough(r, q, below)) return q;
       const column = this.columns[q] as number;
       const range = (this.upper[column] as number) - (this.lower[column] as number);
-      if (Math.abs(this.cells[at + q] as number) * range >= missing - FEASIBLE) return q;
       const upwards = this.atUpper[q] === 0;
       this.atUpper[q] = Number(upwards);
       this.shift(q, upwards ? range : -range);
-      if (passed === 0) helping.sort((a, b) => this.compareRatios(a, b, at));
-      passed += 1;
     }
     return -1;
   }
 
-  /** The columns that can move the row's variable the way it must go. */
-  private helping(at: number, below: boolean): number[] {
-    const found: number[] = [];
+  /** Whether the column's range brings the row's variable to its bound. */
+  private isEnough(r: number, q: number, below: boolean): boolean {
+    const variable = this.inside[r] as number;
+    const value = this.values[r] as number;
+    const missing = below ? (this.lower[variable] as number) - value : value - (this.upper[variable] as number);
+    const column = this.columns[q] as number;
+    const range = (this.upper[column] as number) - (this.lower[column] as number);
+    return Math.abs(this.cells[r * this.room + q] as number) * range >= missing - FEASIBLE;
+  }
+
+  private nearest(at: number, below: boolean): number {
+    let found = -1;
     for (let k = 0; k < this.outside; k++) {
-      const cell = this.cells[at + k] as number;
-      // Going up lowers the row's variable where the cell is positive.
-      const helps = below === (this.atUpper[k] === 0) ? cell < -EPSILON : cell > EPSILON;
-      const column = this.columns[k] as number;
-      if (helps && this.lower[column] !== this.upper[column]) found.push(k);
+      if (this.helps(at, k, below) && (found === -1 || this.compareRatios(k, found, at) < 0)) found = k;
     }
     return found;
   }
 
-  private nearest(helping: readonly number[], at: number): number {
-    let found = 0;
-    for (let n = 1; n < helping.length; n++) {
-      if (this.compareRatios(helping[n] as number, helping[found] as number, at) < 0) found = n;
-    }
-    return found;
+  /** Whether the column can move the row's variable the way it must go. */
+  private helps(at: number, k: number, below: boolean): boolean {
+    const cell = this.cells[at + k] as number;
+    // Going up lowers the row's variable where the cell is positive.
+    if (below === (this.atUpper[k] === 0) ? cell >= -EPSILON : cell <= EPSILON) return false;
+    const column = this.columns[k] as number;
+    return this.lower[column] !== this.upper[column];
   }
 
   /** By what a unit of the row's variable costs; of two that cost the same the one with the greater cell is first. */
   private compareRatios(a: number, b: number, at: number): number {
-    const [cellA, cellB] = [Math.abs(this.cells[at + a] as number), Math.abs(this.cells[at + b] as number)];
+    const cellA = Math.abs(this.cells[at + a] as number);
+    const cellB = Math.abs(this.cells[at + b] as number);
     const by = Math.abs(this.costs[a] as number) / cellA - Math.abs(this.costs[b] as number) / cellB;
     return Math.abs(by) <= 1e-12 ? cellB - cellA : by;
   }

@@ -19,9 +19,15 @@ export type Change =
 
 export function withChange(decisions: Decisions, change: Change): Decisions {
   const { buckets, fresh } = decisions;
-  if ('bucket' in change) return { ...decisions, buckets: buckets.with(change.bucket, change.to) };
-  if ('component' in change) return { ...decisions, fresh: fresh.with(change.component, change.to) };
+  if ('bucket' in change) return { ...decisions, buckets: replaced(buckets, change.bucket, change.to) };
+  if ('component' in change) return { ...decisions, fresh: replaced(fresh, change.component, change.to) };
   return { ...decisions, batch: change.batch };
+}
+
+function replaced<T>(list: readonly T[], at: number, by: T): T[] {
+  const copy = list.slice();
+  copy[at] = by;
+  return copy;
 }
 
 /** m_j = min(m, M·t_j) in mg of the least batch that is left: fresh ink of a component is nothing, or at least this. */

@@ -56,22 +56,24 @@ export class Subset {
 
   /** Decides what `decisions` have decided beyond these. */
   decide(decisions: Decisions): void {
-    const { buckets, fresh, batch } = decisions;
-    if (batch !== this.decisions.batch) this.change({ batch });
-    buckets.forEach((to, bucket) => this.decisions.buckets[bucket] !== to && this.change({ bucket, to }));
-    fresh.forEach((to, component) => this.decisions.fresh[component] !== to && this.change({ component, to }));
+    const before = this.decisions;
+    this.decisions = decisions;
+    if (decisions.batch !== before.batch) this.limitBatch();
+    decisions.buckets.forEach((to, i) => before.buckets[i] !== to && this.limitBucket(i, before.buckets[i], to));
+    decisions.fresh.forEach((to, j) => before.fresh[j] !== to && this.limitFresh(j));
   }
 
   change(change: Change): void {
-    if ('bucket' in change) this.changeBucket(change.bucket, change.to);
-    this.decisions = withChange(this.decisions, change);
-    if ('component' in change) this.limitFresh(change.component);
-    if ('batch' in change) this.limitBatch();
+    const before = this.decisions;
+    this.decisions = withChange(before, change);
+    if ('bucket' in change) this.limitBucket(change.bucket, before.buckets[change.bucket], change.to);
+    else if ('component' in change) this.limitFresh(change.component);
+    else this.limitBatch();
   }
 
-  private changeBucket(i: number, to: Decision): void {
+  private limitBucket(i: number, from: Decision | undefined, to: Decision): void {
     const { simplex, search, relaxation } = this;
-    if (!isOpened(this.decisions.buckets[i])) {
+    if (!isOpened(from)) {
       if (to !== 'closed') this.open(i);
       simplex.setBounds(i, 0, 0);
       if (to === 'closed') return;
