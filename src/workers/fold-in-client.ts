@@ -1,16 +1,9 @@
 import { type FoldInPlan, type FoldInProblem, verifyPlan } from '#domain/fold-in.ts';
-import type { FromWorker, ToWorker } from './fold-in-messages.ts';
+import { type Solver, UnverifiedPlanError, askWorker } from './ask-worker.ts';
 
-/** What the client uses of a Worker. */
-export type Solver = Pick<Worker, 'postMessage' | 'addEventListener' | 'removeEventListener'>;
+export { type Solver, UnverifiedPlanError };
 
 let worker: Solver | undefined;
-let lastId = 0;
-
-/** A worker answered with a plan that does not hold in exact arithmetic; it is never shown. */
-export class UnverifiedPlanError extends Error {
-  override name = 'UnverifiedPlanError';
-}
 
 /** Solves in the worker; the plan has been verified exactly on this side. @throws UnverifiedPlanError, Error */
 export function solveFoldIn(
@@ -22,46 +15,21 @@ export function solveFoldIn(
   return askSolver(worker, problem, onProgress, signal);
 }
 
-/** One question to a solver; it ends with a verified plan, a refusal, a broken worker or the caller's cancel. */
-export function askSolver(
+/** One question to a solver; what it answers is verified. @throws UnverifiedPlanError, Error */
+export async function askSolver(
   solver: Solver,
   problem: FoldInProblem,
   onProgress?: (plan: FoldInPlan) => void,
   signal?: AbortSignal,
 ): Promise<FoldInPlan> {
-  const id = ++lastId;
-  const send = (message: ToWorker) => solver.postMessage(message);
-  return new Promise((resolve, reject) => {
-    if (signal?.aborted) return reject(new Error('Cancelled.'));
-    const end = () => {
-      solver.removeEventListener('message', listen);
-      solver.removeEventListener('error', broken);
-      signal?.removeEventListener('abort', abort);
-    };
-    const abort = () => {
-      end();
-      send({ cancel: id });
-      reject(new Error('Cancelled.'));
-    };
-    const broken = () => {
-      end();
-      // A worker that could not start is made anew with the next question.
-      if (solver === worker) worker = undefined;
-      reject(new Error('The search could not start. Try again.'));
-    };
-    const listen = (event: MessageEvent<FromWorker>) => {
-      const message = event.data;
-      if (message.id !== id) return;
-      if (message.kind === 'progress') return onProgress?.(message.plan);
-      end();
-      if (message.kind === 'failed') return reject(new Error(message.message));
-      const verdict = verifyPlan(problem, message.plan);
-      if (verdict.ok) resolve(message.plan);
-      else reject(new UnverifiedPlanError(verdict.reasons.join(' ')));
-    };
-    signal?.addEventListener('abort', abort);
-    solver.addEventListener('message', listen);
-    solver.addEventListener('error', broken);
-    send({ id, problem });
-  });
+  const on = { progress: (found: { plan: FoldInPlan }) => onProgress?.(found.plan), broken: () => forget(solver) };
+  const { plan } = await askWorker<{ plan: FoldInPlan }, { plan: FoldInPlan }>(solver, problem, on, signal);
+  const verdict = verifyPlan(problem, plan);
+  if (!verdict.ok) throw new UnverifiedPlanError(verdict.reasons.join(' '));
+  return plan;
+}
+
+/** A worker that could not start is made anew with the next question. */
+function forget(solver: Solver): void {
+  if (solver === worker) worker = undefined;
 }
