@@ -13,7 +13,7 @@ export interface ErrorLimit {
 
 const NONE: ErrorLimit = { error: 0n, need: 1n };
 /** Bisection halves until so few errors are left; these are then told apart exactly. */
-const FEW = 64n;
+const FEW = 64;
 const FINE = 2n ** 60n;
 
 /**
@@ -29,9 +29,10 @@ export function leastError(
   const greatest = greatestError(needs, denominator);
   if (!fits(greatest)) return undefined;
   if (fits(NONE)) return NONE;
+  const between = stepCounter(needs, denominator);
   let low = 0n;
   let high = ceilDivide(greatest.error * FINE, greatest.need);
-  while (high - low > 1n && stepsBetween(needs, denominator, fine(low), fine(high)) > FEW) {
+  while (high - low > 1n && between(high - low) > FEW) {
     const middle = (low + high) / 2n;
     if (fits(fine(middle))) high = middle;
     else low = middle;
@@ -80,14 +81,14 @@ function greatestError(needs: readonly Need[], denominator: bigint): ErrorLimit 
   return greatest;
 }
 
-function stepsBetween(needs: readonly Need[], denominator: bigint, low: ErrorLimit, high: ErrorLimit): bigint {
-  let count = 0n;
-  for (const entry of needs) {
-    const [from, to] = windowOf(entry, denominator, high);
-    const [least, most] = windowOf(entry, denominator, low);
-    count += to - from - (most < least ? -1n : most - least);
-  }
-  return count;
+/** About how many steps have errors in an interval of so many 1/FINE. */
+function stepCounter(needs: readonly Need[], denominator: bigint): (width: bigint) => number {
+  const sizes = needs.map(({ need }) => (2 * Number(need)) / Number(denominator));
+  const spans = needs.map(({ need, lower, upper }) => (need === 0n ? 0 : Number(upper - lower)));
+  return (width) => {
+    const part = Number(width) / Number(FINE);
+    return sizes.reduce((sum, size, n) => sum + Math.min(size * part, spans[n] as number), 0);
+  };
 }
 
 /** The errors above `low` and up to `high` that steps within the bounds have, smallest first. */
