@@ -1,9 +1,8 @@
 import type { Composition } from './composition.ts';
 import type { Contents, Tolerance } from './fill-pot.ts';
-import { type Milligrams, WHOLE } from './mass.ts';
-import { ceilDivide } from './min-max-steps.ts';
-
-const PPB = BigInt(WHOLE);
+import { ceilDivide } from './least-error.ts';
+import type { Milligrams } from './mass.ts';
+import { PPB, leastTotal, partsOf } from './repair-pot.ts';
 
 /**
  * M' of core mathematics C: the least final batch, rounded up to whole mg, that what lies in the pot can become within
@@ -17,18 +16,9 @@ export function leastBatch(
   rounding: Milligrams,
 ): Milligrams | undefined {
   const held = [...lying.values()].reduce((a, b) => a + b, 0n);
-  const contents = withoutRounding(target, lying, rounding);
-  let least = ceilDivide(held, PPB);
-  for (const [id, amount] of contents) {
-    const most = BigInt(target.get(id) ?? 0) + BigInt(tolerance.get(id) ?? 0);
-    if (amount === 0n) continue;
-    if (most === 0n) return undefined;
-    const needed = ceilDivide(amount, most);
-    if (needed > least) least = needed;
-  }
-  const root = fillingRoot(target, tolerance, contents);
-  if (root === undefined) return undefined;
-  return Number(root > least ? root : least) as Milligrams;
+  const parts = partsOf(withoutRounding(target, lying, rounding), target, tolerance);
+  const least = leastTotal({ parts, mass: ceilDivide(held, PPB), scale: 1n }, 0n, 1n);
+  return least === undefined ? undefined : (Number(least) as Milligrams);
 }
 
 /** One step over is what rounding to the scale does; no foreign component is excused by it. */
@@ -40,39 +30,4 @@ function withoutRounding(target: Composition, contents: Contents, rounding: Mill
       return [id, amount > excused ? amount - excused : 0n];
     }),
   );
-}
-
-/**
- * The root of Σ max(p_j, M(t_j − τ_j)) = M: below it the lower edges and the surplus do not fit together. Piecewise
- * linear and convex: one component after another moves from its content to its lower edge as M grows.
- */
-function fillingRoot(target: Composition, tolerance: Tolerance, contents: Contents): bigint | undefined {
-  let foreign = 0n;
-  for (const [id, amount] of contents) if (!target.has(id)) foreign += amount;
-  const parts = [...target]
-    .map(([id, share]) => ({
-      edge: BigInt(share - Math.min(share, tolerance.get(id) ?? 0)),
-      held: contents.get(id) ?? 0n,
-    }))
-    .sort((a, b) => compare(a.held * b.edge, b.held * a.edge));
-  let heldAbove = foreign + parts.reduce((sum, part) => sum + part.held, 0n);
-  let edges = 0n;
-  // With n components at their lower edge: M·(1 − Σ edges) ≥ Σ of the other contents.
-  for (let n = 0; n <= parts.length; n++) {
-    const slope = PPB - edges;
-    if (slope > 0n || heldAbove === 0n) {
-      const root = slope > 0n ? ceilDivide(heldAbove, slope) : 0n;
-      const next = parts[n];
-      if (next === undefined || root * next.edge <= next.held) return root;
-    }
-    const moved = parts[n];
-    if (moved === undefined) break;
-    edges += moved.edge;
-    heldAbove -= moved.held;
-  }
-  return undefined;
-}
-
-function compare(a: bigint, b: bigint): number {
-  return a < b ? -1 : a > b ? 1 : 0;
 }

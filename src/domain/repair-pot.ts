@@ -24,28 +24,37 @@ export interface RepairPot {
   scale: bigint;
 }
 
-/** Adds up what was put in; components of the formula that are not in yet count with nothing. */
+/** Adds up what was put in. */
 export function potOf(
   contents: readonly { composition: Composition; mass: Milligrams }[],
   target: Composition,
   tolerance: ReadonlyMap<string, PartsPerBillion>,
 ): RepairPot {
   const held = new Map<string, bigint>();
-  for (const id of target.keys()) held.set(id, 0n);
   let mass = 0n;
   for (const source of contents) {
     const amount = BigInt(source.mass);
     mass += amount;
     for (const [id, share] of source.composition) held.set(id, (held.get(id) ?? 0n) + amount * BigInt(share));
   }
+  return { parts: partsOf(held, target, tolerance), mass, scale: 1n };
+}
+
+/** The formula's components, also those that are not in yet, then the foreign ones. @param held mg·ppb */
+export function partsOf(
+  held: ReadonlyMap<string, bigint>,
+  target: Composition,
+  tolerance: ReadonlyMap<string, PartsPerBillion>,
+): PotPart[] {
   const parts: PotPart[] = [];
-  for (const [id, amount] of held) {
-    const share = target.get(id) ?? 0;
+  const add = (id: string, share: number) => {
     const off = tolerance.get(id) ?? 0;
     const [lower, upper] = [BigInt(Math.max(0, share - off)), BigInt(share + off)];
-    parts.push({ id, held: amount, share: BigInt(share), tolerance: BigInt(off), lower, upper });
-  }
-  return { parts, mass, scale: 1n };
+    parts.push({ id, held: held.get(id) ?? 0n, share: BigInt(share), tolerance: BigInt(off), lower, upper });
+  };
+  for (const [id, share] of target) add(id, share);
+  for (const id of held.keys()) if (!target.has(id)) add(id, 0);
+  return parts;
 }
 
 /** Without `removed` mg of one component, which must lie in it. */
