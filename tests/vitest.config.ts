@@ -7,6 +7,8 @@ const unit = {
   name: 'unit',
   include: ['src/**/*.test.{ts,tsx}', 'tests/reference/**/*.test.ts', 'tests/maths/**/*.test.ts'],
   setupFiles: ['fake-indexeddb/auto'],
+  // Generous: a loaded machine is no failure.
+  testTimeout: 120_000,
 };
 const lint = {
   name: 'lint',
