@@ -1,85 +1,107 @@
 import type { QueueProblem } from '#domain/plan-queue.ts';
 
+type Batch = QueueProblem['batches'][number];
+type Bucket = QueueProblem['buckets'][number];
+
+/** mg in a unit of the program: kilograms, which the general solver takes to best. */
+export const PROGRAM_UNIT = 1e6;
 const BILLION = 1e9;
-const grams = (mass: number) => mass / 1000;
+const inUnits = (mass: number) => Number((mass / PROGRAM_UNIT).toPrecision(12));
+
+interface Program {
+  objective: string[];
+  rows: string[];
+  bounds: string[];
+  binaries: string[];
+}
 
 /**
- * Core mathematics D as a mixed-integer program in CPLEX's LP text, masses in g. Per bucket i and batch b that can take
- * of it: z (opened), q (g); per bucket f (used up; else at least a sliver stays); per batch and component y, w as in A.
+ * Core mathematics D as a mixed-integer program in CPLEX's LP text. Per bucket i and batch b that can take of it: z
+ * (opened), q (mass); per batch m (its mass); per batch and component y (fresh), w (some fresh), as in A; per bucket k
+ * (something stays of it: at least a sliver). Pairs of which nothing fits are left out.
  */
-export function queueMip({ batches, buckets }: QueueProblem, relaxed = false): string {
-  const objective: string[] = [];
-  const rows: string[] = [];
-  const bounds: string[] = [];
-  const binaries: string[] = [];
+export function queueMip({ batches, buckets }: QueueProblem): string {
+  const program: Program = { objective: [], rows: [], bounds: [], binaries: [] };
   const taken = buckets.map((): string[] => []);
-  let sliver = 0;
-  batches.forEach((batch, b) => {
-    const least = grams(batch.batch.minimum);
-    const greatest = grams(batch.batch.maximum);
-    const share = (id: string) => (batch.target.get(id) ?? 0) / BILLION;
-    const tau = (id: string) => (batch.tolerance.get(id) ?? 0) / BILLION;
-    const minimum = grams(Math.max(1, Math.ceil(batch.minimumFromBucket / batch.readability)) * batch.readability);
-    const kappa = grams(batch.worthOpening);
-    sliver = Math.max(sliver, grams(batch.sliver));
-    const m = `m${b}`;
-    bounds.push(`${least} <= ${m} <= ${greatest}`);
-    if (greatest > least) objective.push(`- ${m}`);
-    const used: number[] = [];
-    const components = new Set(batch.target.keys());
-    buckets.forEach(({ id, usable, composition }, i) => {
-      if (batch.allowed !== undefined && !batch.allowed.has(id)) return;
-      const cap = Math.min(
-        grams(usable),
-        ...[...composition].map(([of, ppb]) => (greatest * (share(of) + tau(of)) * BILLION) / ppb),
-      );
-      if (cap <= 0 || (cap < minimum && cap < grams(usable))) return;
-      used.push(i);
-      for (const of of composition.keys()) components.add(of);
-      const q = `q${i}_${b}`;
-      objective.push(`+ ${q} - ${kappa} z${i}_${b}`);
-      rows.push(`${q} - ${cap} z${i}_${b} <= 0`, `${q} - ${Math.min(minimum, grams(usable))} z${i}_${b} >= 0`);
-      binaries.push(`z${i}_${b}`);
-      taken[i]?.push(q);
-    });
-    if (used.length > 0) rows.push(`${used.map((i) => `+ z${i}_${b}`).join(' ')} <= ${batch.maximumBuckets}`);
-    const fresh: string[] = [];
-    [...components].forEach((of, j) => {
-      const held = used.flatMap((i) => {
-        const r = (buckets[i]?.composition.get(of) ?? 0) / BILLION;
-        return r === 0 ? [] : [`+ ${r} q${i}_${b}`];
-      });
-      const y = `y${j}_${b}`;
-      const sum = [...held, ...(share(of) > 0 ? [`+ ${y}`] : [])].join(' ');
-      if (sum === '') return;
-      rows.push(`${sum} - ${share(of) + tau(of)} ${m} <= 0`);
-      const lower = Math.max(0, share(of) - tau(of));
-      if (lower > 0) rows.push(`${sum} - ${lower} ${m} >= 0`);
-      if (share(of) === 0) return;
-      const enough = Math.min(grams(batch.minimumFresh), least * share(of));
-      fresh.push(`+ ${y}`);
-      if (enough === 0) return;
-      rows.push(`${y} - ${enough} w${j}_${b} >= 0`, `${y} - ${greatest * (share(of) + tau(of))} w${j}_${b} <= 0`);
-      binaries.push(`w${j}_${b}`);
-    });
-    rows.push(`${[...used.map((i) => `+ q${i}_${b}`), ...fresh].join(' ')} - ${m} = 0`);
-  });
-  taken.forEach((list, i) => {
-    const usable = grams(buckets[i]?.usable ?? 0);
-    if (list.length === 0) return;
-    const sum = list.join(' + ');
-    rows.push(`${sum} + ${Math.min(sliver, usable)} k${i} <= ${usable}`, `${sum} + ${usable} k${i} >= ${usable}`);
-    if (buckets[i]?.mustUse) rows.push(`k${i} <= 0`);
-    binaries.push(`k${i}`);
-  });
+  batches.forEach((batch, b) => addBatch(program, batch, b, buckets, taken));
+  const sliver = batches.reduce((most, batch) => Math.max(most, batch.sliver), 0);
+  buckets.forEach((bucket, i) => addBucket(program, bucket, i, taken[i] ?? [], sliver));
   return [
     'Maximize',
-    ` obj: ${objective.length === 0 ? '0 m0' : objective.join(' ')}`,
+    ` obj: ${program.objective.length === 0 ? '0 m0' : program.objective.join(' ')}`,
     'Subject To',
-    ...rows.map((row, n) => ` c${n}: ${row}`),
+    ...program.rows.map((row, n) => ` c${n}: ${row}`),
     'Bounds',
-    ...bounds.map((bound) => ` ${bound}`),
-    ...(relaxed ? binaries.map((name) => ` ${name} <= 1`) : ['Binary', ...binaries.map((name) => ` ${name}`)]),
+    ...program.bounds.map((bound) => ` ${bound}`),
+    'Binary',
+    ` ${program.binaries.join(' ')}`,
     'End',
   ].join('\n');
+}
+
+function addBatch(program: Program, batch: Batch, b: number, buckets: readonly Bucket[], taken: string[][]): void {
+  const { minimum: least, maximum: greatest } = batch.batch;
+  program.bounds.push(`${inUnits(least)} <= m${b} <= ${inUnits(greatest)}`);
+  if (greatest > least) program.objective.push(`- m${b}`);
+  const used = buckets.flatMap((bucket, i) => (addPair(program, batch, b, bucket, i) ? [i] : []));
+  for (const i of used) taken[i]?.push(`q${i}_${b}`);
+  if (used.length > batch.maximumBuckets)
+    program.rows.push(`${used.map((i) => `+ z${i}_${b}`).join(' ')} <= ${batch.maximumBuckets}`);
+  const components = new Set([
+    ...batch.target.keys(),
+    ...used.flatMap((i) => [...(buckets[i] as Bucket).composition.keys()]),
+  ]);
+  [...components].forEach((id, j) => {
+    const held = used.flatMap((i) => {
+      const ppb = buckets[i]?.composition.get(id);
+      return ppb === undefined ? [] : [`+ ${ppb / BILLION} q${i}_${b}`];
+    });
+    addComponent(program, batch, id, [b, j], held);
+  });
+  const fresh = [...batch.target.keys()].map((_, j) => `+ y${j}_${b}`);
+  program.rows.push(`${[...used.map((i) => `+ q${i}_${b}`), ...fresh].join(' ')} - m${b} = 0`);
+}
+
+/** False when nothing of the bucket may go into the batch. */
+function addPair(program: Program, batch: Batch, b: number, { id, usable, composition }: Bucket, i: number): boolean {
+  if (batch.allowed?.has(id) === false) return false;
+  const room = (of: string) => (batch.target.get(of) ?? 0) + (batch.tolerance.get(of) ?? 0);
+  const cap = Math.min(usable, ...[...composition].map(([of, ppb]) => (batch.batch.maximum * room(of)) / ppb));
+  const minimum = Math.min(usable, Math.max(batch.minimumFromBucket, batch.readability));
+  if (cap <= 0 || cap < minimum) return false;
+  const [q, z] = [`q${i}_${b}`, `z${i}_${b}`];
+  program.objective.push(batch.worthOpening === 0 ? `+ ${q}` : `+ ${q} - ${inUnits(batch.worthOpening)} ${z}`);
+  program.rows.push(`${q} - ${inUnits(cap)} ${z} <= 0`, `${q} - ${inUnits(minimum)} ${z} >= 0`);
+  program.binaries.push(z);
+  return true;
+}
+
+function addComponent({ rows, binaries }: Program, batch: Batch, id: string, [b, j]: [number, number], held: string[]) {
+  const share = batch.target.get(id) ?? 0;
+  const tau = batch.tolerance.get(id) ?? 0;
+  const y = `y${j}_${b}`;
+  const sum = [...held, ...(share > 0 ? [`+ ${y}`] : [])].join(' ');
+  const edge = (ppb: number) => `${ppb / BILLION} m${b}`;
+  if (tau === 0) rows.push(`${sum} - ${edge(share)} = 0`);
+  else rows.push(`${sum} - ${edge(share + tau)} <= 0`, `${sum} - ${edge(Math.max(0, share - tau))} >= 0`);
+  const enough = Math.min(batch.minimumFresh, (batch.batch.minimum * share) / BILLION);
+  if (enough === 0) return;
+  const most = (batch.batch.maximum * (share + tau)) / BILLION;
+  rows.push(`${y} - ${inUnits(enough)} w${j}_${b} >= 0`, `${y} - ${inUnits(most)} w${j}_${b} <= 0`);
+  binaries.push(`w${j}_${b}`);
+}
+
+function addBucket(
+  { rows, binaries }: Program,
+  { usable, mustUse }: Bucket,
+  i: number,
+  taken: string[],
+  sliver: number,
+) {
+  if (taken.length === 0) return;
+  const sum = taken.join(' + ');
+  const all = inUnits(usable);
+  rows.push(`${sum} + ${inUnits(Math.min(sliver, usable))} k${i} <= ${all}`, `${sum} + ${all} k${i} >= ${all}`);
+  if (mustUse) rows.push(`k${i} <= 0`);
+  binaries.push(`k${i}`);
 }

@@ -10,6 +10,7 @@ export interface QueueAsk {
   tolerance: boolean;
   maximumBuckets: number;
   worthOpening: Milligrams;
+  minimumFresh: Milligrams;
 }
 
 const grams = (mass: number) => Math.round(mass * 1000) as Milligrams;
@@ -33,7 +34,7 @@ export function makeQueueShop(seed: number, ask: QueueAsk): QueueProblem {
       tolerance: ask.tolerance ? toleranceOf(recipe(target)) : new Map(),
       readability: grams(0.1),
       minimumFromBucket: grams(20),
-      minimumFresh: grams(2),
+      minimumFresh: ask.minimumFresh,
       sliver: grams(30),
       maximumBuckets: ask.maximumBuckets,
       worthOpening: ask.worthOpening,

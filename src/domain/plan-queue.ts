@@ -29,9 +29,10 @@ export interface QueuePlans {
 }
 
 /**
- * Yields the best plans so far with their bound, the first once every batch has one, then after every few plans made;
- * the caller keeps the time. Ends when the bound is reached, or when `MOST_IDLE` turns of taking plans back have not
- * made them better and the prices stand. The same problem gives the same plans. @throws FoldInError
+ * Yields the best plans so far with their bound: first when every batch has a plan (a second's work for 500 buckets and
+ * 40 batches), then after every few milliseconds' work; the caller keeps the time. Ends when the bound is reached, or when
+ * the prices stand and 60 turns and 12 for each batch, each taking some plans back, have made nothing better. The same
+ * problem gives the same plans. @throws FoldInError for bad input, and when a bucket that must be used up cannot be
  */
 export function* searchQueue(problem: QueueProblem): Generator<QueuePlans, QueuePlans> {
   requireQueue(problem);

@@ -11,9 +11,6 @@ import { QueueShelf } from './queue-shelf.ts';
 /** Turns for each batch without a better plan after which the search ends, and at least. */
 const IDLE_EACH = 12;
 const IDLE_LEAST = 60;
-/** Rounds of prices before the first plans. */
-const FIRST_ROUNDS = 1;
-
 /** Prices first, then plans at these prices; then better prices and better plans by turns. */
 export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePlans> {
   const usable = problem.buckets.map((bucket) => bucket.usable);
@@ -24,27 +21,25 @@ export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePla
   const shelf = new QueueShelf(usable, batches);
   const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
   const description = new QueueDescription(problem, batches, shelf, prices);
-
   const rounds = prices.rounds();
-  while (prices.round < FIRST_ROUNDS && rounds.next().done !== true);
+  while (prices.round === 0) rounds.next();
   recreation.planAll();
-  let isPriced = false;
-  let idle = 0;
   const most = IDLE_LEAST + IDLE_EACH * batches.length;
-  while (!description.isReached && (idle < most || !isPriced)) {
+  let isPriced = false;
+  for (let idle = 0; idle < most || (!isPriced && recreation.isEmptied);) {
+    const found = recreation.isEmptied ? description.found : undefined;
+    if (found !== undefined) yield found;
+    if (found !== undefined && description.isReached) return found;
     const turn = recreation.turn();
-    for (let step = turn.next(); ; step = turn.next()) {
+    let step = turn.next();
+    for (; !step.done; step = turn.next()) {
       isPriced ||= rounds.next().done === true;
-      if (step.done) {
-        idle = step.value ? 0 : idle + 1;
-        break;
-      }
+      // What is on the shelf in between is no whole week.
+      if (found !== undefined) yield found;
     }
-    if (recreation.isEmptied) yield description.found;
-    else if (idle >= most) break;
+    idle = step.value ? 0 : idle + 1;
   }
   const must = musts.find((bucket) => shelf.left[bucket] !== 0);
-  if (must !== undefined)
-    throw new FoldInError(`Bucket ${problem.buckets[must]?.id} cannot be used up by these batches: allow it to stay.`);
-  return description.found;
+  if (must === undefined) return description.found;
+  throw new FoldInError(`Bucket ${problem.buckets[must]?.id} cannot be used up by these batches: allow it to stay.`);
 }

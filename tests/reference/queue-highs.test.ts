@@ -2,7 +2,7 @@ import { expect, test } from 'vitest';
 import type { Milligrams } from '#domain/mass.ts';
 import { searchQueue, verifyQueue } from '#domain/plan-queue.ts';
 import { askHighs } from '#scripts/bench/ask-highs.ts';
-import { queueMip } from '#scripts/bench/queue-mip.ts';
+import { PROGRAM_UNIT, queueMip } from '#scripts/bench/queue-mip.ts';
 import { makeQueueShop } from '#scripts/bench/queue-shop.ts';
 
 const mg = (grams: number) => (grams * 1000) as Milligrams;
@@ -17,7 +17,7 @@ test.each([
   [4, true, 0],
   [5, true, 100],
 ])('shop %i (tolerance %s, κ %i g): reuses what HiGHS does, within its bound', async (seed, tolerance, worth) => {
-  const ask = { buckets: 30, batches: 5, tolerance, maximumBuckets: 3, worthOpening: mg(worth) };
+  const ask = { buckets: 30, batches: 5, tolerance, maximumBuckets: 3, worthOpening: mg(worth), minimumFresh: mg(2) };
   const problem = makeQueueShop(seed, ask);
   const search = searchQueue(problem);
   let step = search.next();
@@ -25,7 +25,7 @@ test.each([
   const { plans, reused, bound } = step.value;
   const objective = [...plans.values()].reduce((sum, plan) => sum + plan.objective, 0);
   const highs = await askHighs(queueMip(problem), 60);
-  const optimum = highs.objective * 1000;
+  const optimum = highs.objective * PROGRAM_UNIT;
   expect(highs.finished).toBe(true);
   expect(verifyQueue(problem, plans)).toEqual({ ok: true });
   expect(objective).toBeGreaterThanOrEqual(0.985 * optimum - ROUNDING);
