@@ -98,7 +98,7 @@ function addBucket(
   taken: string[],
   sliver: number,
 ) {
-  if (taken.length === 0) return;
+  if (taken.length === 0) return void (mustUse && usable > 0 && rows.push('m0 <= 0'));
   const sum = taken.join(' + ');
   const all = inUnits(usable);
   rows.push(`${sum} + ${inUnits(Math.min(sliver, usable))} k${i} <= ${all}`, `${sum} + ${all} k${i} >= ${all}`);

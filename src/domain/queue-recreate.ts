@@ -7,8 +7,12 @@ import { type BatchPlan, roundTaken } from './queue-round.ts';
 import type { QueueShelf } from './queue-shelf.ts';
 
 const NODES = 300;
-/** What a mg that stays in a bucket that must be used up costs: more than anything gains. */
-const MUST = 10;
+/** A bucket that must be used up; `price`: what a mg that stays of it costs, all of it more than a whole queue gains. */
+export interface Must {
+  bucket: number;
+  price: number;
+}
+
 /** Of so many turns one makes all plans anew. */
 const ALL_EVERY = 30;
 
@@ -23,8 +27,7 @@ export class QueueRecreation {
     private readonly shelf: QueueShelf,
     private readonly pricing: QueuePrices,
     private readonly fresh: readonly BatchPlan[],
-    /** Buckets that must be used up. */
-    private readonly musts: readonly number[],
+    private readonly musts: readonly Must[],
   ) {
     this.choice = new QueueChoice(batches, shelf, pricing, this.random);
   }
@@ -32,11 +35,11 @@ export class QueueRecreation {
   /** mg gained over fresh ink, less what is left of buckets that must be used up. */
   get value(): number {
     const gained = this.shelf.plans.reduce((sum, plan) => sum + (plan?.value ?? 0), 0);
-    return this.musts.reduce((sum, bucket) => sum - MUST * (this.shelf.left[bucket] as number), gained);
+    return this.musts.reduce((sum, { bucket, price }) => sum - price * (this.shelf.left[bucket] as number), gained);
   }
 
   get isEmptied(): boolean {
-    return this.musts.every((bucket) => this.shelf.left[bucket] === 0);
+    return this.musts.every(({ bucket }) => this.shelf.left[bucket] === 0);
   }
 
   /** First plans, the largest batch first. */
@@ -82,7 +85,7 @@ export class QueueRecreation {
     const batch = this.batches[place] as QueueBatch;
     const limits = this.shelf.limitsFor(batch);
     const prices = this.pricing.prices.map((price) => price * part);
-    for (const bucket of this.musts) prices[bucket] = -MUST;
+    for (const { bucket, price } of this.musts) prices[bucket] = -price;
     const search = new PricedSearch(batch, prices, limits, 0);
     search.run(NODES);
     const { taken } = search.found;

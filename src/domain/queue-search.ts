@@ -4,7 +4,7 @@ import { prepareBatch } from './queue-batch.ts';
 import { told } from './queue-check.ts';
 import { QueueDescription } from './queue-describe.ts';
 import { QueuePrices } from './queue-prices.ts';
-import { QueueRecreation } from './queue-recreate.ts';
+import { type Must, QueueRecreation } from './queue-recreate.ts';
 import { freshPlan } from './queue-round.ts';
 import { QueueShelf } from './queue-shelf.ts';
 
@@ -16,7 +16,7 @@ export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePla
   const usable = problem.buckets.map((bucket) => bucket.usable);
   const batches = problem.batches.map((_, place) => prepareBatch(problem, place));
   const fresh = batches.map((batch) => told(`Batch ${batch.id}`, () => freshPlan(batch)));
-  const musts = problem.buckets.flatMap(({ mustUse, usable: mass }, bucket) => (mustUse && mass > 0 ? [bucket] : []));
+  const musts = mustsOf(problem);
   const prices = new QueuePrices(batches, usable);
   const shelf = new QueueShelf(usable, batches);
   const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
@@ -39,7 +39,15 @@ export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePla
     }
     idle = step.value ? 0 : idle + 1;
   }
-  const must = musts.find((bucket) => shelf.left[bucket] !== 0);
+  const must = musts.find(({ bucket }) => shelf.left[bucket] !== 0);
   if (must === undefined) return description.found;
-  throw new FoldInError(`Bucket ${problem.buckets[must]?.id} cannot be used up by these batches: allow it to stay.`);
+  const { id } = problem.buckets[must.bucket] as QueueProblem['buckets'][number];
+  throw new FoldInError(`No plans were found that use up bucket ${id} in these batches: allow it to stay.`);
+}
+
+function mustsOf({ batches, buckets }: QueueProblem): Must[] {
+  const all = batches.reduce((sum, { batch }) => sum + batch.maximum, 0);
+  return buckets.flatMap(({ mustUse, usable }, bucket) =>
+    mustUse && usable > 0 ? [{ bucket, price: 1 + (10 * all) / usable }] : [],
+  );
 }

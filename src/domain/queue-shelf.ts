@@ -44,14 +44,15 @@ export class QueueShelf {
     return [...(this.takers[bucket]?.keys() ?? [])];
   }
 
-  /** Batches whose part of a bucket was right only as its last one: off the step, or too little to take out. */
+  /** Batches that cannot keep their part of a bucket without this plan: a sliver stays, or only the last may have such a part. */
   stranded(plan: BatchPlan): number[] {
-    return plan.takings.flatMap(({ bucket }) =>
-      [...(this.takers[bucket] ?? [])].flatMap(([place, mass]) => {
+    return plan.takings.flatMap(({ bucket }) => {
+      const left = this.left[bucket] as number;
+      return [...(this.takers[bucket] ?? [])].flatMap(([place, mass]) => {
         const { ask, minimum } = this.batches[place] as QueueBatch;
-        return mass % ask.readability !== 0 || mass < minimum ? [place] : [];
-      }),
-    );
+        return left < this.sliver || mass % ask.readability !== 0 || mass < minimum ? [place] : [];
+      });
+    });
   }
 
   /** How each candidate may give to a batch that has no part of it now. */
@@ -69,15 +70,13 @@ export class QueueShelf {
     return { least: new Float64Array(count).fill(batch.minimum), partly, most };
   }
 
-  /** In the order of the queue the last that takes of a bucket empties it; what the others leave is on their step and no sliver. */
+  /** In the order of the queue the last that takes of a bucket empties it; those before leave no sliver, and keep to the step. */
   private mayEmpty({ place, ask, minimum }: QueueBatch, bucket: number): boolean {
     const others = this.takers[bucket] as Map<number, number>;
-    if (others.size === 0) return true;
+    const last = Math.max(...others.keys());
+    if (place > last) return true;
     const left = this.left[bucket] as number;
-    if (left < Math.max(this.sliver, minimum)) return false;
-    const isLast = [...others.keys()].every((other) => other < place);
-    if (!isLast && left % ask.readability !== 0) return false;
-    return [...others.values()].every((mass) => mass >= this.sliver);
+    return left >= minimum && left % ask.readability === 0 && (others.get(last) as number) >= this.sliver;
   }
 
   /** Of each bucket that is used up: the batch that comes last and empties it. */
