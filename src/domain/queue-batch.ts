@@ -50,7 +50,29 @@ export function prepareBatch(queue: QueueProblem, place: number): QueueBatch {
   };
 }
 
-/** What any plan of the queue could take, whatever the other batches leave. */
-export function widestLimits({ caps, leastRest }: QueueBatch): Limits {
-  return { least: caps.map((cap) => Math.min(cap, leastRest)), partly: caps, most: caps };
+/**
+ * What any plan of the queue could take, whatever the other batches leave: of a bucket that no other batch could use,
+ * what stays is no sliver.
+ * @param askers of each bucket on the shelf: how many batches could use it @param sliver mg: the least of any batch
+ */
+export function widestLimits(batch: QueueBatch, askers: Uint32Array, sliver: number): Limits {
+  const { caps, leastRest, minimum, buckets, search } = batch;
+  const limits = { least: caps.map((cap) => Math.min(cap, leastRest)), partly: caps.slice(), most: caps.slice() };
+  buckets.forEach((bucket, k) => {
+    if (askers[bucket] !== 1) return;
+    const { usable } = search.candidates[k] as Search['candidates'][number];
+    const cap = caps[k] as number;
+    const partly = Math.min(cap, usable - sliver);
+    limits.least[k] = minimum;
+    limits.partly[k] = partly;
+    limits.most[k] = cap === usable ? usable : partly >= minimum ? partly : 0;
+  });
+  return limits;
+}
+
+/** Of each bucket on the shelf: how many batches could use it. */
+export function countAskers(batches: readonly QueueBatch[], count: number): Uint32Array {
+  const askers = new Uint32Array(count);
+  for (const { buckets } of batches) for (const bucket of buckets) askers[bucket] = (askers[bucket] as number) + 1;
+  return askers;
 }

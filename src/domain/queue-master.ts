@@ -15,44 +15,54 @@ export interface Mix {
 
 const MOST_TURNS = 20;
 
-/** The best mix of these plans: each batch has one whole plan's worth, no bucket gives too much. */
-export function solveMaster(columns: readonly (readonly Column[])[], usable: readonly number[]): Mix {
-  const rows = contested(columns, usable);
+/** mg that a mg costs which stays in a bucket that must be used up: beyond what prices need to reach. */
+const MUST = 10;
+
+/** The best mix of these plans: each batch has one whole plan's worth, no bucket gives too much, those that must give all. */
+export function solveMaster(
+  columns: readonly (readonly Column[])[],
+  usable: readonly number[],
+  musts: ReadonlySet<number>,
+): Mix {
+  const rows = contested(columns, usable, musts);
   const all = columns.flatMap((list, place) => list.map((column) => ({ ...column, place })));
+  const width = all.length + musts.size;
   const height = columns.length + rows.size;
-  const matrix = new Float64Array(height * all.length);
-  const gains = new Float64Array(all.length);
+  const matrix = new Float64Array(height * width);
+  const gains = new Float64Array(width);
   const unit = Math.max(1, ...all.map(({ value }) => value));
   all.forEach(({ value, place, buckets, masses }, n) => {
     gains[n] = value / unit;
-    matrix[place * all.length + n] = 1;
+    matrix[place * width + n] = 1;
     buckets.forEach((bucket, m) => {
       const row = rows.get(bucket);
-      if (row !== undefined) matrix[row * all.length + n] = (masses[m] as number) / (usable[bucket] as number);
+      if (row !== undefined) matrix[row * width + n] = (masses[m] as number) / (usable[bucket] as number);
     });
   });
-  const size = all.length + height;
-  const lp = new DualSimplex(
-    {
-      matrix,
-      gains,
-      right: new Float64Array(height).fill(1),
-      lower: new Float64Array(size),
-      upper: new Float64Array(size).fill(1),
-    },
-    0,
-  );
+  const upper = new Float64Array(width + height).fill(1);
+  [...musts].forEach((bucket, n) => {
+    const row = rows.get(bucket) as number;
+    matrix[row * width + all.length + n] = 1;
+    gains[all.length + n] = (-MUST * (usable[bucket] as number)) / unit;
+    upper[width + row] = 0;
+  });
+  const right = new Float64Array(height).fill(1);
+  const lp = new DualSimplex({ matrix, gains, right, lower: new Float64Array(width + height), upper }, 0);
   for (let turn = 0; turn < MOST_TURNS && lp.solve() === 'cut'; turn++);
   const prices = new Float64Array(usable.length);
   rows.forEach((row, bucket) => {
-    const price = (lp.multiplier(all.length + row) * unit) / (usable[bucket] as number);
-    prices[bucket] = Math.min(1, Math.max(0, price));
+    const price = (lp.multiplier(width + row) * unit) / (usable[bucket] as number);
+    prices[bucket] = Math.min(1, Math.max(musts.has(bucket) ? -MUST : 0, price));
   });
   return { prices, value: lp.objective * unit };
 }
 
-/** Bucket → row, of those that the batches could ask too much of. */
-function contested(columns: readonly (readonly Column[])[], usable: readonly number[]): Map<number, number> {
+/** Bucket → row, of those that the batches could ask too much of, and those that must be used up. */
+function contested(
+  columns: readonly (readonly Column[])[],
+  usable: readonly number[],
+  musts: ReadonlySet<number>,
+): Map<number, number> {
   const asked = new Float64Array(usable.length);
   for (const list of columns) {
     const most = new Map<number, number>();
@@ -62,7 +72,7 @@ function contested(columns: readonly (readonly Column[])[], usable: readonly num
   }
   const rows = new Map<number, number>();
   usable.forEach((mass, bucket) => {
-    if ((asked[bucket] as number) > mass + 1) rows.set(bucket, columns.length + rows.size);
+    if (musts.has(bucket) || (asked[bucket] as number) > mass + 1) rows.set(bucket, columns.length + rows.size);
   });
   return rows;
 }

@@ -1,4 +1,4 @@
-import { type QueueBatch, widestLimits } from './queue-batch.ts';
+import { type Limits, type QueueBatch, countAskers, widestLimits } from './queue-batch.ts';
 import { PricedSearch } from './queue-branch.ts';
 import { type Column, solveMaster } from './queue-master.ts';
 import type { BatchPlan } from './queue-round.ts';
@@ -35,6 +35,7 @@ export class QueuePrices {
   readonly alone: Float64Array;
   /** What each batch is valued at most at the best prices. */
   readonly valued: Float64Array;
+  private readonly limits: readonly Limits[];
   private readonly columns: Column[][];
   private readonly known: (Known | undefined)[];
   private nodes = FIRST_NODES;
@@ -43,7 +44,12 @@ export class QueuePrices {
   constructor(
     private readonly batches: readonly QueueBatch[],
     private readonly usable: readonly number[],
+    /** Buckets that must be used up: their prices may be below 0. */
+    private readonly musts: ReadonlySet<number>,
   ) {
+    const sliver = Math.min(...batches.map(({ ask }) => ask.sliver));
+    const askers = countAskers(batches, usable.length);
+    this.limits = batches.map((batch) => widestLimits(batch, askers, sliver));
     this.prices = new Float64Array(usable.length);
     this.alone = new Float64Array(batches.length).fill(Infinity);
     this.valued = new Float64Array(batches.length);
@@ -69,7 +75,7 @@ export class QueuePrices {
       const isOld = this.columnCount === count;
       if (isStill && isOld && this.nodes >= MOST_NODES) return;
       if (isStill && (isOld || this.bound - mix.value < MIX_NEAR * this.bound)) this.lookCloser();
-      mix = solveMaster(this.columns, this.usable);
+      mix = solveMaster(this.columns, this.usable, this.musts);
       yield;
     }
   }
@@ -106,7 +112,7 @@ export class QueuePrices {
       const isWell = known.nodes >= this.nodes || known.bound - known.floor < this.near;
       if (isWell && bound - floor < known.bound - known.floor + this.near) return bound;
     }
-    const search = new PricedSearch(batch, prices, widestLimits(batch), floor);
+    const search = new PricedSearch(batch, prices, this.limits[batch.place] as Limits, floor);
     for (let nodes = 0; nodes < this.nodes && !search.run(NODES_A_STEP); nodes += NODES_A_STEP) yield;
     yield;
     const { bound, value, taken } = search.found;

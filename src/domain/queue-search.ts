@@ -17,7 +17,7 @@ export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePla
   const batches = problem.batches.map((_, place) => prepareBatch(problem, place));
   const fresh = batches.map((batch) => told(`Batch ${batch.id}`, () => freshPlan(batch)));
   const musts = mustsOf(problem);
-  const prices = new QueuePrices(batches, usable);
+  const prices = new QueuePrices(batches, usable, new Set(musts.map(({ bucket }) => bucket)));
   const shelf = new QueueShelf(usable, batches);
   const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
   const description = new QueueDescription(problem, batches, shelf, prices);
