@@ -35,7 +35,11 @@ export async function explainPull(db: Database, shopId: string, rows: number): P
   const { cursor } = await pullChanges(db, shopId, { cursor: '', limit: 1, installId: undefined, now });
   const epoch = cursor.split(':')[0];
   const { seq } = await inShop(db, shopId, (trx) =>
-    trx.selectFrom('shopSync').select('seq').where('shopId', '=', shopId).executeTakeFirstOrThrow(),
+    trx
+      .selectFrom('buckets')
+      .select((eb) => eb.fn.max('changeSeq').as('seq'))
+      .where('shopId', '=', shopId)
+      .executeTakeFirstOrThrow(),
   );
   const statements: { text: string; values: unknown[] }[] = [];
   const send = pg.Client.prototype.query;

@@ -58,6 +58,30 @@ describe('push', () => {
     expect(await quarantined(bad.opId)).toEqual(['unreadable']);
   });
 
+  test('one that the database refuses is found among the others and quarantined alone', async () => {
+    const [good, other, third] = [
+      record(await aBatch(), 'mixer'),
+      record(await aBatch(), 'mixer'),
+      record(await aBatch(), 'mixer'),
+    ];
+    const body = await aBatch();
+    // The batch of another entry: its key is taken, which only the database sees.
+    const again = record(
+      { ...body, body: { ...body.body, batchId: (good.body as typeof body.body).batchId } },
+      'mixer',
+    );
+    const results = await push([good, again, other, third]);
+    expect(results.map((result) => result.outcome)).toEqual(['accepted', 'rejected', 'accepted', 'accepted']);
+    expect(await quarantined(again.opId)).toEqual(['not-storable']);
+    expect((await push([good, other, third])).map((result) => result.outcome)).toEqual(Array(3).fill('duplicate'));
+  });
+
+  test('an entry that comes twice in one push is stored once', async () => {
+    const operation = record(await aBatch(), 'mixer');
+    const results = await push([operation, operation]);
+    expect(results.map((result) => result.outcome)).toEqual(['accepted', 'duplicate']);
+  });
+
   test('the number of another entry is refused and kept', async () => {
     const first = record(await aBatch(), 'mixer');
     await push([first]);

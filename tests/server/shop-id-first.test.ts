@@ -94,3 +94,16 @@ test('every statement of a push and a pull names the shop of the rows that it to
   expect(touching.length).toBeGreaterThan(20);
   expect(touching.filter((text) => !text.includes('shop_id'))).toEqual([]);
 });
+
+test('a push of fifty takes no more statements than one of five: one a table', async () => {
+  const countOf = async (count: number) => {
+    const ops = [];
+    for (let n = 0; n < count; n++) ops.push(record(await aBatch(), 'mixer'));
+    statements.length = 0;
+    expect((await push(ops)).every(({ outcome }) => outcome === 'accepted')).toBe(true);
+    return statements.length;
+  };
+  const five = await countOf(5);
+  expect(await countOf(50)).toBe(five);
+  expect(five).toBeLessThan(40);
+});

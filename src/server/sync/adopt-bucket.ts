@@ -1,22 +1,22 @@
 import type { OperationBody } from '#contract/operation-bodies.ts';
 import { CompositionError, requireWhole } from '#domain/composition.ts';
 import type { PartsPerBillion } from '#domain/mass.ts';
-import { requireOwn } from '#server/repositories/require-own.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
 import { insertBucket } from './insert-bucket.ts';
+import { requireOwn } from './require-own.ts';
 
 type Adopted = Extract<OperationBody, { type: 'bucket-adopted' }>['body'];
 
 /** A tub from before the books: weighed; what is in it is assumed, or unknown when no composition is given. */
-export async function adoptBucket(context: ApplyContext, body: Adopted): Promise<void> {
-  await requireOwn(context, 'families', body.familyId);
-  await requireOwn(context, 'containers', body.containerId);
-  await requireOwn(context, 'locations', body.locationId);
-  await requireOwn(context, 'components', ...body.composition.map((share) => share.componentId));
+export function adoptBucket(context: ApplyContext, body: Adopted): void {
+  requireOwn(context, 'families', body.familyId);
+  requireOwn(context, 'containers', body.containerId);
+  requireOwn(context, 'locations', body.locationId);
+  requireOwn(context, 'components', ...body.composition.map((share) => share.componentId));
   const composition = new Map(body.composition.map((share) => [share.componentId, share.ppb as PartsPerBillion]));
   if (composition.size > 0) requireAddsUp(composition);
   if (body.grossMg <= body.tareMg) throw new RejectedError('below-tare', 'The gross weight is below the tare.');
-  await insertBucket(
+  insertBucket(
     context,
     {
       bucketId: body.bucketId,

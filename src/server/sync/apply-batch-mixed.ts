@@ -2,99 +2,83 @@ import type { Addition, Filled, OperationBody } from '#contract/operation-bodies
 import { inherit, keptOnTub } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import type { Milligrams } from '#domain/mass.ts';
-import { moveBucket, requireBucket } from '#server/repositories/buckets.ts';
-import { requireOwn } from '#server/repositories/require-own.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
 import { drawLots } from './draw-lots.ts';
 import { insertBucket } from './insert-bucket.ts';
+import { moveBucket, requireBucket } from './move-bucket.ts';
+import { type Revision, revisionKey } from './push-facts.ts';
 import { type Source, readSources } from './read-sources.ts';
+import { requireOwn } from './require-own.ts';
 
 type BatchMixed = Extract<OperationBody, { type: 'batch-mixed' }>['body'];
 
 /** A mixed batch: its additions, what it took from lots and buckets, and the labelled tubs that hold it now. */
-export async function applyBatchMixed(context: ApplyContext, body: BatchMixed): Promise<void> {
+export function applyBatchMixed(context: ApplyContext, body: BatchMixed): void {
   const total = sum(body.additions.map((addition) => addition.actualMg));
   if (total !== sum(body.filled.map((tub) => tub.massMg))) {
     throw new RejectedError('sum', 'What was filled is not what was weighed in.');
   }
-  await requireParts(context, body);
-  const revision = await requireRevision(context, body);
-  const sources = await readSources(context, body.additions);
-  await insertBatch(context, body, total);
-  await insertAdditions(context, body);
-  await drawLots(context, body.additions);
+  requireParts(context, body);
+  const revision = requireRevision(context, body);
+  const sources = readSources(context, body.additions);
+  insertBatch(context, body, total);
+  insertAdditions(context, body);
+  drawLots(context, body.additions);
   let n = 1;
   for (const source of sources)
-    if (source.bucket !== undefined) n = await takeFrom(context, source.bucket.id, source.addition, n);
+    if (source.bucket !== undefined) n = takeFrom(context, source.bucket.id, source.addition, n);
   const mixture = mixtureOf(sources);
   const inherited = keptOnTub(inherit(sources));
   for (const tub of body.filled) {
-    await insertBucket(context, { ...tubOf(context, body, tub), ...inherited, ...revision, composition: mixture }, n++);
-    await insertParents(context, tub, sources);
+    insertBucket(context, { ...tubOf(context, body, tub), ...inherited, ...revision, composition: mixture }, n++);
+    insertParents(context, tub, sources);
   }
 }
 
-async function requireParts(context: ApplyContext, body: BatchMixed): Promise<void> {
+function requireParts(context: ApplyContext, body: BatchMixed): void {
   const { additions } = body;
-  await requireOwn(context, 'jobs', body.jobId);
-  await requireOwn(context, 'scales', ...additions.map((addition) => addition.scaleId));
-  await requireOwn(context, 'people', ...additions.map((addition) => addition.actorId));
-  await requireOwn(
+  requireOwn(context, 'jobs', body.jobId);
+  requireOwn(context, 'scales', ...additions.map((addition) => addition.scaleId));
+  requireOwn(context, 'people', ...additions.map((addition) => addition.actorId));
+  requireOwn(
     context,
     'components',
     ...additions.map((addition) => (addition.kind === 'component' ? addition.componentId : null)),
   );
-  await requireOwn(
-    context,
-    'lots',
-    ...additions.map((addition) => (addition.kind === 'component' ? addition.lotId : null)),
-  );
-  await requireOwn(context, 'containers', ...body.filled.map((tub) => tub.containerId));
-  await requireOwn(context, 'locations', ...body.filled.map((tub) => tub.locationId));
+  requireOwn(context, 'lots', ...additions.map((addition) => (addition.kind === 'component' ? addition.lotId : null)));
+  requireOwn(context, 'containers', ...body.filled.map((tub) => tub.containerId));
+  requireOwn(context, 'locations', ...body.filled.map((tub) => tub.locationId));
 }
 
-async function requireRevision({ trx, shopId }: ApplyContext, body: BatchMixed) {
-  const row = await trx
-    .selectFrom('formulaRevisions as r')
-    .innerJoin('formulas as f', (join) => join.onRef('f.shopId', '=', 'r.shopId').onRef('f.id', '=', 'r.formulaId'))
-    .select(['f.name', 'r.familyId', 'r.lab', 'r.hiding'])
-    .where('r.shopId', '=', shopId)
-    .where('r.formulaId', '=', body.formulaId)
-    .where('r.revision', '=', body.revision)
-    .executeTakeFirst();
-  if (row === undefined) throw new RejectedError('no-such-formula', 'There is no such formula revision in this shop.');
-  return row;
+function requireRevision({ draft }: ApplyContext, body: BatchMixed): Revision {
+  const revision = draft.facts.revisions.get(revisionKey(body.formulaId, body.revision));
+  if (revision === undefined)
+    throw new RejectedError('no-such-formula', 'There is no such formula revision in this shop.');
+  return revision;
 }
 
-async function insertBatch(
-  { trx, shopId, seq, operation, at }: ApplyContext,
-  body: BatchMixed,
-  total: number,
-): Promise<void> {
-  await trx
-    .insertInto('batches')
-    .values({
-      shopId,
-      id: body.batchId,
-      opId: operation.opId,
-      formulaId: body.formulaId,
-      revision: body.revision,
-      plannedMg: body.plannedMg,
-      actualMg: total,
-      reusedMg: sum(body.additions.map((addition) => (addition.kind === 'bucket' ? addition.actualMg : 0))),
-      state: body.release === null ? 'mixed' : 'released',
-      light: body.release?.light ?? null,
-      releasedBy: body.release === null ? null : operation.actorId,
-      mixedBy: operation.actorId,
-      mixedAt: at,
-      jobId: body.jobId,
-      rush: body.rush,
-      changeSeq: seq,
-    })
-    .execute();
+function insertBatch({ draft, shopId, seq, operation, at }: ApplyContext, body: BatchMixed, total: number): void {
+  draft.writes.batches.push({
+    shopId,
+    id: body.batchId,
+    opId: operation.opId,
+    formulaId: body.formulaId,
+    revision: body.revision,
+    plannedMg: body.plannedMg,
+    actualMg: total,
+    reusedMg: sum(body.additions.map((addition) => (addition.kind === 'bucket' ? addition.actualMg : 0))),
+    state: body.release === null ? 'mixed' : 'released',
+    light: body.release?.light ?? null,
+    releasedBy: body.release === null ? null : operation.actorId,
+    mixedBy: operation.actorId,
+    mixedAt: at,
+    jobId: body.jobId,
+    rush: body.rush,
+    changeSeq: seq,
+  });
 }
 
-async function insertAdditions({ trx, shopId }: ApplyContext, body: BatchMixed): Promise<void> {
+function insertAdditions({ draft, shopId }: ApplyContext, body: BatchMixed): void {
   const rows = body.additions.map((addition, index) => ({
     shopId,
     batchId: body.batchId,
@@ -108,15 +92,15 @@ async function insertAdditions({ trx, shopId }: ApplyContext, body: BatchMixed):
     actualMg: addition.actualMg,
     addedAt: new Date(addition.at),
   }));
-  await trx.insertInto('additions').values(rows).execute();
+  draft.writes.additions.push(...rows);
 }
 
 /**
  * What the books still hold of a tub that was scraped empty stays on its wall. Read anew: a batch may take from one tub
  * twice.
  */
-async function takeFrom(context: ApplyContext, bucketId: string, addition: Addition, n: number): Promise<number> {
-  const bucket = await requireBucket(context, bucketId);
+function takeFrom(context: ApplyContext, bucketId: string, addition: Addition, n: number): number {
+  const bucket = requireBucket(context, bucketId);
   const empties = addition.kind === 'bucket' && addition.empties;
   const rest = bucket.balanceMg - addition.actualMg;
   const movements = [{ kind: 'folded-in' as const, deltaMg: -addition.actualMg }];
@@ -146,14 +130,14 @@ function tubOf({ operation, at }: ApplyContext, body: BatchMixed, tub: Filled) {
   };
 }
 
-async function insertParents({ trx, shopId }: ApplyContext, tub: Filled, sources: readonly Source[]): Promise<void> {
+function insertParents({ draft, shopId }: ApplyContext, tub: Filled, sources: readonly Source[]): void {
   const masses = new Map<string, number>();
   for (const { bucket, addition } of sources) {
     if (bucket !== undefined) masses.set(bucket.id, (masses.get(bucket.id) ?? 0) + addition.actualMg);
   }
   if (masses.size === 0) return;
   const rows = [...masses].map(([parentId, massMg]) => ({ shopId, childId: tub.bucketId, parentId, massMg }));
-  await trx.insertInto('bucketParents').values(rows).execute();
+  draft.writes.bucketParents.push(...rows);
 }
 
 function sum(masses: readonly number[]): number {

@@ -1,44 +1,33 @@
 import type { OperationBody } from '#contract/operation-bodies.ts';
-import { moveBucket, requireBucket } from '#server/repositories/buckets.ts';
-import { requireOwn } from '#server/repositories/require-own.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
+import { moveBucket, requireBucket } from './move-bucket.ts';
+import { requireOwn } from './require-own.ts';
 
 type BodyOf<T extends OperationBody['type']> = Extract<OperationBody, { type: T }>['body'];
 
-export async function applyBatchReleased(context: ApplyContext, body: BodyOf<'batch-released'>): Promise<void> {
-  const { trx, shopId, seq, operation } = context;
-  const batch = await trx
-    .updateTable('batches')
-    .set({ state: 'released', light: body.release.light, releasedBy: operation.actorId, changeSeq: seq })
-    .where('shopId', '=', shopId)
-    .where('id', '=', body.batchId)
-    .returning('id')
-    .executeTakeFirst();
-  if (batch === undefined) throw new RejectedError('no-such-batch', 'There is no such batch in this shop.');
-  await trx
-    .updateTable('buckets')
-    .set({ released: true, changeSeq: seq })
-    .where('shopId', '=', shopId)
-    .where('batchId', '=', body.batchId)
-    .execute();
+export function applyBatchReleased(context: ApplyContext, body: BodyOf<'batch-released'>): void {
+  const { draft, seq, operation } = context;
+  if (!draft.hasBatch(body.batchId)) throw new RejectedError('no-such-batch', 'There is no such batch in this shop.');
+  draft.writes.releases.push({ batchId: body.batchId, light: body.release.light, releasedBy: operation.actorId });
+  for (const tub of draft.tubsOfBatch(body.batchId)) draft.tubs.set(tub.id, { ...tub, released: true, changeSeq: seq });
 }
 
-export async function applyIssued(context: ApplyContext, body: BodyOf<'bucket-issued'>): Promise<void> {
-  const bucket = await requireBucket(context, body.bucketId);
-  await requireOwn(context, 'jobs', body.jobId);
+export function applyIssued(context: ApplyContext, body: BodyOf<'bucket-issued'>): void {
+  const bucket = requireBucket(context, body.bucketId);
+  requireOwn(context, 'jobs', body.jobId);
   if (!bucket.released && body.overrideReason === null) {
     throw new RejectedError('not-released', 'This ink is not released. Name a reason to issue it.');
   }
-  await moveBucket(context, bucket, [], { state: 'at-press', jobId: body.jobId, locationId: null });
+  moveBucket(context, bucket, [], { state: 'at-press', jobId: body.jobId, locationId: null });
 }
 
-export async function applyReturned(context: ApplyContext, body: BodyOf<'bucket-returned'>): Promise<void> {
+export function applyReturned(context: ApplyContext, body: BodyOf<'bucket-returned'>): void {
   requireWeighed(body);
-  const bucket = await requireBucket(context, body.bucketId);
-  await requireOwn(context, 'jobs', body.jobId);
-  await requireOwn(context, 'locations', body.locationId);
+  const bucket = requireBucket(context, body.bucketId);
+  requireOwn(context, 'jobs', body.jobId);
+  requireOwn(context, 'locations', body.locationId);
   const balance = bucket.balanceMg + body.deltaMg;
-  await moveBucket(context, bucket, [{ kind: 'used', deltaMg: body.deltaMg, jobId: body.jobId ?? bucket.jobId }], {
+  moveBucket(context, bucket, [{ kind: 'used', deltaMg: body.deltaMg, jobId: body.jobId ?? bucket.jobId }], {
     tareMg: body.tareMg,
     locationId: body.locationId,
     jobId: body.jobId ?? bucket.jobId,
@@ -48,21 +37,21 @@ export async function applyReturned(context: ApplyContext, body: BodyOf<'bucket-
   });
 }
 
-export async function applyRelocated(context: ApplyContext, body: BodyOf<'bucket-relocated'>): Promise<void> {
-  await requireOwn(context, 'locations', body.locationId);
-  await moveBucket(context, await requireBucket(context, body.bucketId), [], { locationId: body.locationId });
+export function applyRelocated(context: ApplyContext, body: BodyOf<'bucket-relocated'>): void {
+  requireOwn(context, 'locations', body.locationId);
+  moveBucket(context, requireBucket(context, body.bucketId), [], { locationId: body.locationId });
 }
 
-export async function applyRecounted(context: ApplyContext, body: BodyOf<'bucket-recounted'>): Promise<void> {
+export function applyRecounted(context: ApplyContext, body: BodyOf<'bucket-recounted'>): void {
   requireWeighed(body);
-  const bucket = await requireBucket(context, body.bucketId);
+  const bucket = requireBucket(context, body.bucketId);
   const change = { tareMg: body.tareMg, needsRecount: false };
-  await moveBucket(context, bucket, [{ kind: 'recounted', deltaMg: body.deltaMg }], change);
+  moveBucket(context, bucket, [{ kind: 'recounted', deltaMg: body.deltaMg }], change);
 }
 
-export async function applyDiscarded(context: ApplyContext, body: BodyOf<'bucket-discarded'>): Promise<void> {
-  const bucket = await requireBucket(context, body.bucketId);
-  await moveBucket(context, bucket, [{ kind: 'discarded', deltaMg: -bucket.balanceMg }], {
+export function applyDiscarded(context: ApplyContext, body: BodyOf<'bucket-discarded'>): void {
+  const bucket = requireBucket(context, body.bucketId);
+  moveBucket(context, bucket, [{ kind: 'discarded', deltaMg: -bucket.balanceMg }], {
     state: 'discarded',
     needsRecount: false,
   });

@@ -1,15 +1,15 @@
 import type { Operation } from '#contract/operation.ts';
-import type { ShopTransaction } from '#server/db/in-shop.ts';
+import type { PushDraft } from './push-book.ts';
 
 /** What the effects of one operation share. */
 export interface ApplyContext {
-  trx: ShopTransaction;
   shopId: string;
   /** This push's place in the shop's order of changes. */
   seq: number;
   operation: Operation;
   /** Business time: the device's, corrected, not after it was received. */
   at: Date;
+  draft: PushDraft;
 }
 
 /** Why an operation is not accepted, in a sentence for the technician. */

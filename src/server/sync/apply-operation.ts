@@ -11,7 +11,7 @@ import {
 } from './apply-bucket.ts';
 
 /** The effect of one operation on batches, buckets and movements. */
-export function applyOperation(context: ApplyContext): Promise<void> {
+export function applyOperation(context: ApplyContext): void {
   const { operation } = context;
   switch (operation.type) {
     case 'batch-mixed':

@@ -1,51 +1,57 @@
 import { createHash } from 'node:crypto';
-import { sql } from 'kysely';
 import { type Operation, operation as operationSchema, operationId } from '#contract/operation.ts';
-import { makeProblem } from '#contract/problem.ts';
+import { type Problem, makeProblem } from '#contract/problem.ts';
 import { PROTOCOL, type PushOutcome, type PushRequest, type PushResponse } from '#contract/push.ts';
 import type { Database } from '#server/db/connection.ts';
 import { type ShopTransaction, inShop } from '#server/db/in-shop.ts';
 import { log } from '#server/http/log.ts';
-import { applyOperation } from './apply-operation.ts';
 import { RejectedError } from './apply-context.ts';
+import { applyOperation } from './apply-operation.ts';
 import { requireAuthorised } from './authorise.ts';
 import { canonicalJson } from './canonical-json.ts';
 import { correctedTime } from './corrected-time.ts';
+import { PushBook, PushDraft } from './push-book.ts';
+import { readFacts } from './push-facts.ts';
+import { referencesOf } from './push-references.ts';
+import { quarantine } from './quarantine.ts';
+import { writePush } from './write-push.ts';
 
 export interface PushDeps {
   now: () => Date;
   randomId: () => string;
 }
 
-interface Received {
+export interface PushStation {
+  shopId: string;
+  stationId: string;
+}
+
+/** An operation as it came, readable or not. */
+export interface Received {
   raw: unknown;
   opId: string;
   hash: Buffer;
   parsed: { operation: Operation } | { problem: string };
 }
 
+export interface Refused {
+  entry: Received;
+  problem: Problem;
+}
+
 /**
  * Takes a push in one transaction under the shop's counter row: each operation once, a poor one into quarantine and the
  * others carried. An operation without a readable id is not listed in the answer.
  */
-export function applyPush(
+export async function applyPush(
   db: Database,
-  station: { shopId: string; stationId: string },
+  station: PushStation,
   push: PushRequest,
   deps: PushDeps,
 ): Promise<PushResponse> {
   const received = push.ops.flatMap((raw) => receive(raw) ?? []);
-  return inShop(db, station.shopId, async (trx) => {
-    const { seq } = await trx
-      .updateTable('shopSync')
-      .set((eb) => ({ seq: eb('seq', '+', 1) }))
-      .where('shopId', '=', station.shopId)
-      .returning('seq')
-      .executeTakeFirstOrThrow();
-    const results: PushOutcome[] = [];
-    for (const entry of received) results.push(await takeOne(trx, station, entry, seq, deps));
-    return { protocol: PROTOCOL, requestId: push.requestId, serverTime: deps.now().toISOString(), results };
-  });
+  const results = await takeAll(db, station, received, deps);
+  return { protocol: PROTOCOL, requestId: push.requestId, serverTime: deps.now().toISOString(), results };
 }
 
 function receive(raw: unknown): Received | undefined {
@@ -63,126 +69,113 @@ function receive(raw: unknown): Received | undefined {
   };
 }
 
-/** A savepoint for each operation: what it half wrote is undone, what came before stays. */
-async function takeOne(
-  trx: ShopTransaction,
-  station: { shopId: string; stationId: string },
-  entry: Received,
-  seq: number,
+/** On an unforeseen error nothing of it is written; each half is tried by itself, until the one that fails is alone. */
+async function takeAll(
+  db: Database,
+  station: PushStation,
+  received: readonly Received[],
   deps: PushDeps,
-): Promise<PushOutcome> {
-  await sql`savepoint one_operation`.execute(trx);
+): Promise<PushOutcome[]> {
   try {
-    if ('problem' in entry.parsed) throw new RejectedError('unreadable', `Not readable. ${entry.parsed.problem}.`);
-    const outcome = await store(trx, station, entry, entry.parsed.operation, seq, deps);
-    await sql`release savepoint one_operation`.execute(trx);
-    return outcome;
+    return await inShop(db, station.shopId, (trx) => takeTogether(trx, station, received, deps));
   } catch (error) {
-    await sql`rollback to savepoint one_operation`.execute(trx);
-    return quarantine(trx, station, entry, error, deps);
+    if (isPassing(error)) throw error;
+    const [first] = received;
+    if (received.length > 1) {
+      const half = received.length >> 1;
+      const before = await takeAll(db, station, received.slice(0, half), deps);
+      return [...before, ...(await takeAll(db, station, received.slice(half), deps))];
+    }
+    if (first === undefined) throw error;
+    const refused = { entry: first, problem: problemOf(error, first) };
+    await inShop(db, station.shopId, async (trx) => {
+      await nextSeq(trx, station.shopId);
+      await quarantine(trx, station, [refused], deps);
+    });
+    return [{ opId: first.opId, outcome: 'rejected', problem: refused.problem }];
   }
 }
 
-async function store(
+async function takeTogether(
   trx: ShopTransaction,
-  { shopId, stationId }: { shopId: string; stationId: string },
-  entry: Received,
-  operation: Operation,
-  seq: number,
+  station: PushStation,
+  received: readonly Received[],
   deps: PushDeps,
-): Promise<PushOutcome> {
-  const { opId } = operation;
-  const known = await trx
-    .selectFrom('operations')
-    .select(['hash', 'changeSeq'])
+): Promise<PushOutcome[]> {
+  const seq = await nextSeq(trx, station.shopId);
+  const operations = received.flatMap(({ parsed }) => ('operation' in parsed ? parsed.operation : []));
+  const book = new PushBook(await readFacts(trx, station, referencesOf(operations)));
+  const refused: Refused[] = [];
+  const results = received.map((entry): PushOutcome => {
+    try {
+      return takeOne(book, station, entry, seq, deps);
+    } catch (error) {
+      const problem = problemOf(error, entry);
+      refused.push({ entry, problem });
+      return { opId: entry.opId, outcome: 'rejected', problem };
+    }
+  });
+  await writePush(trx, station.shopId, seq, book);
+  await quarantine(trx, station, refused, deps);
+  return results;
+}
+
+/** The shop's lock, and the place of what is written under it in the order of changes. */
+async function nextSeq(trx: ShopTransaction, shopId: string): Promise<number> {
+  const { seq } = await trx
+    .updateTable('shopSync')
+    .set((eb) => ({ seq: eb('seq', '+', 1) }))
     .where('shopId', '=', shopId)
-    .where('opId', '=', opId)
-    .executeTakeFirst();
+    .returning('seq')
+    .executeTakeFirstOrThrow();
+  return seq;
+}
+
+function takeOne(book: PushBook, { shopId }: PushStation, entry: Received, seq: number, deps: PushDeps): PushOutcome {
+  if ('problem' in entry.parsed) throw new RejectedError('unreadable', `Not readable. ${entry.parsed.problem}.`);
+  const { operation } = entry.parsed;
+  const { opId } = operation;
+  const known = book.facts.operations.get(opId) ?? book.writes.operations.find((written) => written.opId === opId);
   if (known !== undefined) {
     if (!known.hash.equals(entry.hash))
       throw new RejectedError('op-id-reused', 'Another entry has this number already.');
     return { opId, outcome: 'duplicate', changeSeq: known.changeSeq };
   }
-  await requireAuthorised(trx, shopId, stationId, operation);
+  requireAuthorised(book.facts, operation);
   const receivedAt = deps.now();
   const at = correctedTime(operation, receivedAt);
-  await trx
-    .insertInto('operations')
-    .values({
-      shopId,
-      opId,
-      installId: operation.installId,
-      deviceSeq: operation.deviceSeq,
-      actorId: operation.actorId,
-      grantId: operation.grantId,
-      type: operation.type,
-      opVersion: operation.opVersion,
-      envelope: JSON.stringify(entry.raw),
-      hash: entry.hash,
-      correctedTime: at,
-      receivedAt,
-      changeSeq: seq,
-      outcome: operation.grantLapsed ? 'accepted-lapsed' : 'accepted',
-    })
-    .execute();
-  await trx
-    .updateTable('installs')
-    .set((eb) => ({ lastSeq: eb.fn<number>('greatest', ['lastSeq', eb.val(operation.deviceSeq)]) }))
-    .where('shopId', '=', shopId)
-    .where('id', '=', operation.installId)
-    .execute();
-  await applyOperation({ trx, shopId, seq, operation, at });
+  const draft = new PushDraft(book);
+  draft.writes.operations.push({
+    shopId,
+    opId,
+    installId: operation.installId,
+    deviceSeq: operation.deviceSeq,
+    actorId: operation.actorId,
+    grantId: operation.grantId,
+    type: operation.type,
+    opVersion: operation.opVersion,
+    envelope: JSON.stringify(entry.raw),
+    hash: entry.hash,
+    correctedTime: at,
+    receivedAt,
+    changeSeq: seq,
+    outcome: operation.grantLapsed ? 'accepted-lapsed' : 'accepted',
+  });
+  applyOperation({ shopId, seq, operation, at, draft });
+  book.accept(draft);
   return { opId, outcome: 'accepted', changeSeq: seq };
 }
 
-/** The server keeps what it refuses, whole; a refusal for the role is audited. */
-async function quarantine(
-  trx: ShopTransaction,
-  { shopId, stationId }: { shopId: string; stationId: string },
-  entry: Received,
-  error: unknown,
-  deps: PushDeps,
-): Promise<PushOutcome> {
-  const refused = error instanceof RejectedError;
-  if (!refused) {
-    if (isConnectionLoss(error)) throw error;
-    log.error({ opId: entry.opId, error: error instanceof Error ? error.message : String(error) }, 'operation failed');
-  }
-  const code = refused ? error.code : 'not-storable';
-  const detail = refused ? error.message : 'The server could not store this entry. Show it to a manager.';
-  const problem = makeProblem(422, code, 'Not accepted', detail);
-  await trx
-    .insertInto('quarantine')
-    .values({
-      shopId,
-      opId: entry.opId,
-      hash: entry.hash,
-      stationId,
-      raw: JSON.stringify(entry.raw),
-      problem: JSON.stringify(problem),
-      receivedAt: deps.now(),
-    })
-    .onConflict((conflict) => conflict.columns(['shopId', 'opId', 'hash']).doNothing())
-    .execute();
-  if (code === 'wrong-role') {
-    const detailOf = JSON.stringify({ opId: entry.opId, station: stationId });
-    await trx
-      .insertInto('audit')
-      .values({
-        shopId,
-        id: deps.randomId(),
-        at: deps.now(),
-        actorId: null,
-        kind: 'operation-refused',
-        detail: detailOf,
-      })
-      .execute();
-  }
-  return { opId: entry.opId, outcome: 'rejected', problem };
+function problemOf(error: unknown, entry: Received): Problem {
+  if (error instanceof RejectedError) return makeProblem(422, error.code, 'Not accepted', error.message);
+  log.error({ opId: entry.opId, error: error instanceof Error ? error.message : String(error) }, 'operation failed');
+  const detail = 'The server could not store this entry. Show it to a manager.';
+  return makeProblem(422, 'not-storable', 'Not accepted', detail);
 }
 
-/** Without a connection nothing was decided: the station sends the whole push again. */
-function isConnectionLoss(error: unknown): boolean {
+/** A lost connection, a time-out or a deadlock decides nothing: the station sends the whole push again. */
+function isPassing(error: unknown): boolean {
   const code = (error as { code?: unknown }).code;
-  return typeof code === 'string' ? /^(08|57P|ECONN|EPIPE)/.test(code) : /Connection terminated/.test(String(error));
+  if (typeof code === 'string') return /^(08|40|53|55P03|57|ECONN|EPIPE|ETIMEDOUT)/.test(code);
+  return /Connection terminated|timeout exceeded/.test(String(error));
 }

@@ -30,38 +30,31 @@ export interface NewBucket {
 }
 
 /** A new tub with its first movement, number `n` of the operation. @throws RejectedError when its code is given already */
-export async function insertBucket(context: ApplyContext, tub: NewBucket, n: number): Promise<void> {
-  const { trx, shopId, seq, operation } = context;
-  const { bucketId, massMg, composition, lab, restrictions, hazards, ...plain } = tub;
-  const taken = await trx
-    .selectFrom('buckets')
-    .select('id')
-    .where('shopId', '=', shopId)
-    .where('code', '=', tub.code)
-    .executeTakeFirst();
-  if (taken !== undefined)
+export function insertBucket(context: ApplyContext, tub: NewBucket, n: number): void {
+  const { draft, shopId, seq, operation } = context;
+  const { bucketId, massMg, composition, restrictions, hazards, ...plain } = tub;
+  if (draft.isCodeGiven(tub.code))
     throw new RejectedError('code-given', `The code ${tub.code} is on another tub. Print a new label.`);
-  await trx
-    .insertInto('buckets')
-    .values({
-      ...plain,
-      shopId,
-      id: bucketId,
-      filledMg: massMg,
-      balanceMg: massMg,
-      state: 'shelf',
-      needsRecount: false,
-      seen: JSON.stringify({ [operation.installId]: operation.deviceSeq }),
-      lab: lab === null ? null : JSON.stringify(lab),
-      restrictions: [...restrictions],
-      hazards: [...hazards],
-      changeSeq: seq,
-    })
-    .execute();
-  const shares = [...composition].map(([componentId, ppb]) => ({ shopId, bucketId, componentId, ppb: ppb as number }));
-  if (shares.length > 0) await trx.insertInto('bucketComposition').values(shares).execute();
-  await trx
-    .insertInto('movements')
-    .values({ shopId, opId: operation.opId, n, bucketId, kind: 'filled', deltaMg: massMg })
-    .execute();
+  if (draft.findTub(bucketId) !== undefined)
+    throw new RejectedError('tub-given', 'Another entry has filled this tub already.');
+  draft.newTubs.add(bucketId);
+  draft.compositions.set(bucketId, composition);
+  draft.tubs.set(bucketId, {
+    ...plain,
+    shopId,
+    id: bucketId,
+    filledMg: massMg,
+    balanceMg: massMg,
+    state: 'shelf',
+    needsRecount: false,
+    reservedFor: null,
+    deletedAt: null,
+    seen: { [operation.installId]: operation.deviceSeq },
+    restrictions: [...restrictions],
+    hazards: [...hazards],
+    changeSeq: seq,
+  });
+  for (const [componentId, ppb] of composition)
+    draft.writes.bucketComposition.push({ shopId, bucketId, componentId, ppb });
+  draft.writes.movements.push({ shopId, opId: operation.opId, n, bucketId, kind: 'filled', deltaMg: massMg });
 }

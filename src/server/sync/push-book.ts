@@ -1,0 +1,93 @@
+import type { Insertable } from 'kysely';
+import type { Composition } from '#domain/composition.ts';
+import type * as Tables from '#server/db/tables.ts';
+import type { BucketRow, PushFacts } from './push-facts.ts';
+
+/** Rows that a push adds, and what it changes of others. */
+export interface PushWrites {
+  operations: Insertable<Tables.Operations>[];
+  batches: Insertable<Tables.Batches>[];
+  additions: Insertable<Tables.Additions>[];
+  bucketComposition: Insertable<Tables.BucketComposition>[];
+  bucketParents: Insertable<Tables.BucketParents>[];
+  movements: Insertable<Tables.Movements>[];
+  lotMovements: Insertable<Tables.LotMovements>[];
+  releases: { batchId: string; light: string; releasedBy: string }[];
+}
+
+export function noWrites(): PushWrites {
+  return {
+    operations: [],
+    batches: [],
+    additions: [],
+    bucketComposition: [],
+    bucketParents: [],
+    movements: [],
+    lotMovements: [],
+    releases: [],
+  };
+}
+
+/** What one operation would do. It reads the book with its own changes on top, and leaves it as it is until accepted. */
+export class PushDraft {
+  readonly facts: PushFacts;
+  readonly writes = noWrites();
+  readonly tubs = new Map<string, BucketRow>();
+  readonly compositions = new Map<string, Composition>();
+  readonly newTubs = new Set<string>();
+  private readonly book: PushBook;
+
+  constructor(book: PushBook) {
+    this.book = book;
+    this.facts = book.facts;
+  }
+
+  findTub(id: string): BucketRow | undefined {
+    return this.tubs.get(id) ?? this.book.tubs.get(id) ?? this.facts.buckets.get(id);
+  }
+
+  tubsOfBatch(batchId: string): BucketRow[] {
+    const ids = new Set([...this.facts.buckets.keys(), ...this.book.tubs.keys(), ...this.tubs.keys()]);
+    return [...ids].flatMap((id) => this.findTub(id) ?? []).filter((tub) => tub.batchId === batchId);
+  }
+
+  /** Empty when it is unknown. */
+  compositionOf(id: string): Composition {
+    return this.compositions.get(id) ?? this.book.compositions.get(id) ?? this.facts.compositions.get(id) ?? new Map();
+  }
+
+  hasBatch(id: string): boolean {
+    return (
+      this.facts.batches.has(id) ||
+      [this.writes, this.book.writes].some(({ batches }) => batches.some((batch) => batch.id === id))
+    );
+  }
+
+  isCodeGiven(code: string): boolean {
+    if (this.facts.codes.has(code)) return true;
+    return [...this.book.tubs.values(), ...this.tubs.values()].some((tub) => tub.code === code);
+  }
+}
+
+/** A push's operations that are accepted so far: what is written at its end, in one statement a table. */
+export class PushBook {
+  readonly facts: PushFacts;
+  readonly writes = noWrites();
+  /** New and changed tubs as they are after the last accepted operation. */
+  readonly tubs = new Map<string, BucketRow>();
+  readonly compositions = new Map<string, Composition>();
+  readonly newTubs = new Set<string>();
+
+  constructor(facts: PushFacts) {
+    this.facts = facts;
+  }
+
+  accept(draft: PushDraft): void {
+    for (const key of Object.keys(this.writes) as (keyof PushWrites)[]) {
+      (this.writes[key] as unknown[]).push(...draft.writes[key]);
+    }
+    for (const [id, tub] of draft.tubs) this.tubs.set(id, tub);
+    for (const [id, composition] of draft.compositions) this.compositions.set(id, composition);
+    for (const id of draft.newTubs) this.newTubs.add(id);
+  }
+}

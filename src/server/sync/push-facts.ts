@@ -1,0 +1,187 @@
+import type { Selectable } from 'kysely';
+import type { Composition } from '#domain/composition.ts';
+import type { PartsPerBillion } from '#domain/mass.ts';
+import type { ShopTransaction } from '#server/db/in-shop.ts';
+import type { Buckets, Components } from '#server/db/tables.ts';
+import type { PushReferences } from './push-references.ts';
+
+export type BucketRow = Selectable<Buckets>;
+
+/** Tables of which only the ids count. */
+const OWNED = ['jobs', 'locations', 'containers', 'scales', 'families', 'people'] as const;
+export type OwnedTable = (typeof OWNED)[number] | 'components' | 'lots';
+
+export interface Revision {
+  name: string;
+  familyId: string;
+  lab: unknown;
+  hiding: number;
+}
+
+/** What the shop has of the ids that a push names, as it stands under the shop's lock. */
+export interface PushFacts {
+  operations: ReadonlyMap<string, { hash: Buffer; changeSeq: number }>;
+  /** Of this station only. */
+  installs: ReadonlySet<string>;
+  grants: ReadonlyMap<string, { role: string; personId: string }>;
+  owned: ReadonlyMap<OwnedTable, ReadonlySet<string>>;
+  components: ReadonlyMap<string, Pick<Selectable<Components>, 'cureC' | 'restrictions' | 'hazards'>>;
+  /** Use-by of each lot. */
+  lots: ReadonlyMap<string, string | null>;
+  /** By `formula/revision`. */
+  revisions: ReadonlyMap<string, Revision>;
+  batches: ReadonlySet<string>;
+  buckets: ReadonlyMap<string, BucketRow>;
+  compositions: ReadonlyMap<string, Composition>;
+  codes: ReadonlySet<string>;
+}
+
+export const revisionKey = (formulaId: string, revision: number) => `${formulaId}/${revision}`;
+
+/** One statement a table, however many operations there are. */
+export async function readFacts(
+  trx: ShopTransaction,
+  { shopId, stationId }: { shopId: string; stationId: string },
+  named: PushReferences,
+): Promise<PushFacts> {
+  const operations = await trx
+    .selectFrom('operations')
+    .select(['opId', 'hash', 'changeSeq'])
+    .where('shopId', '=', shopId)
+    .where('opId', 'in', listOf(named.operations))
+    .execute();
+  const installs = await trx
+    .selectFrom('installs')
+    .select('id')
+    .where('shopId', '=', shopId)
+    .where('stationId', '=', stationId)
+    .where('id', 'in', listOf(named.installs))
+    .execute();
+  const grants = await trx
+    .selectFrom('grants')
+    .select(['id', 'role', 'personId'])
+    .where('shopId', '=', shopId)
+    .where('stationId', '=', stationId)
+    .where('id', 'in', listOf(named.grants))
+    .execute();
+  const components = await readComponents(trx, shopId, named);
+  const lots = await readLots(trx, shopId, named);
+  const buckets = await readBuckets(trx, shopId, named);
+  return {
+    operations: new Map(operations.map(({ opId, ...rest }) => [opId, rest])),
+    installs: new Set(installs.map(({ id }) => id)),
+    grants: new Map(grants.map(({ id, ...rest }) => [id, rest])),
+    owned: new Map<OwnedTable, ReadonlySet<string>>([
+      ...(await readOwned(trx, shopId, named)),
+      ['components', new Set(components.keys())],
+      ['lots', new Set(lots.keys())],
+    ]),
+    components,
+    lots,
+    revisions: await readRevisions(trx, shopId, named),
+    batches: await readIds(trx, shopId, 'batches', named.batches),
+    buckets,
+    compositions: await readCompositions(trx, shopId, named),
+    codes: await readCodes(trx, shopId, named),
+  };
+}
+
+/** Never empty: a statement with no ids asks for one that nothing has. */
+function listOf(ids: ReadonlySet<string>): string[] {
+  return ids.size === 0 ? ['00000000-0000-0000-0000-000000000000'] : [...ids];
+}
+
+async function readOwned(trx: ShopTransaction, shopId: string, named: PushReferences) {
+  const found: [OwnedTable, ReadonlySet<string>][] = [];
+  for (const table of OWNED) found.push([table, await readIds(trx, shopId, table, named[table])]);
+  return found;
+}
+
+async function readIds(
+  trx: ShopTransaction,
+  shopId: string,
+  table: (typeof OWNED)[number] | 'batches',
+  ids: ReadonlySet<string>,
+): Promise<ReadonlySet<string>> {
+  if (ids.size === 0) return new Set();
+  const rows = await trx
+    .selectFrom(table)
+    .select('id')
+    .where('shopId', '=', shopId)
+    .where('id', 'in', [...ids])
+    .execute();
+  return new Set(rows.map(({ id }) => id));
+}
+
+async function readComponents(trx: ShopTransaction, shopId: string, { components }: PushReferences) {
+  if (components.size === 0) return new Map();
+  const rows = await trx
+    .selectFrom('components')
+    .select(['id', 'cureC', 'restrictions', 'hazards'])
+    .where('shopId', '=', shopId)
+    .where('id', 'in', [...components])
+    .execute();
+  return new Map(rows.map(({ id, ...rest }) => [id, rest]));
+}
+
+async function readLots(trx: ShopTransaction, shopId: string, { lots }: PushReferences) {
+  if (lots.size === 0) return new Map<string, string | null>();
+  const rows = await trx
+    .selectFrom('lots')
+    .select(['id', 'useBy'])
+    .where('shopId', '=', shopId)
+    .where('id', 'in', [...lots])
+    .execute();
+  return new Map(rows.map(({ id, useBy }) => [id, useBy]));
+}
+
+async function readRevisions(trx: ShopTransaction, shopId: string, { formulas }: PushReferences) {
+  if (formulas.size === 0) return new Map<string, Revision>();
+  const rows = await trx
+    .selectFrom('formulaRevisions as r')
+    .innerJoin('formulas as f', (join) => join.onRef('f.shopId', '=', 'r.shopId').onRef('f.id', '=', 'r.formulaId'))
+    .select(['r.formulaId', 'r.revision', 'f.name', 'r.familyId', 'r.lab', 'r.hiding'])
+    .where('r.shopId', '=', shopId)
+    .where('r.formulaId', 'in', [...formulas])
+    .execute();
+  return new Map(rows.map(({ formulaId, revision, ...rest }) => [revisionKey(formulaId, revision), rest]));
+}
+
+/** The tubs that are named, and those of the batches that are named: a release is of all of them. */
+async function readBuckets(trx: ShopTransaction, shopId: string, { buckets, batches }: PushReferences) {
+  if (buckets.size + batches.size === 0) return new Map<string, BucketRow>();
+  const rows = await trx
+    .selectFrom('buckets')
+    .selectAll()
+    .where('shopId', '=', shopId)
+    .where((eb) => eb.or([eb('id', 'in', listOf(buckets)), eb('batchId', 'in', listOf(batches))]))
+    .execute();
+  return new Map(rows.map((row) => [row.id, row]));
+}
+
+async function readCompositions(trx: ShopTransaction, shopId: string, { buckets }: PushReferences) {
+  const found = new Map<string, Map<string, PartsPerBillion>>();
+  if (buckets.size === 0) return found;
+  const rows = await trx
+    .selectFrom('bucketComposition')
+    .select(['bucketId', 'componentId', 'ppb'])
+    .where('shopId', '=', shopId)
+    .where('bucketId', 'in', [...buckets])
+    .execute();
+  for (const { bucketId, componentId, ppb } of rows) {
+    const shares = found.get(bucketId) ?? new Map<string, PartsPerBillion>();
+    found.set(bucketId, shares.set(componentId, ppb as PartsPerBillion));
+  }
+  return found;
+}
+
+async function readCodes(trx: ShopTransaction, shopId: string, { codes }: PushReferences) {
+  if (codes.size === 0) return new Set<string>();
+  const rows = await trx
+    .selectFrom('buckets')
+    .select('code')
+    .where('shopId', '=', shopId)
+    .where('code', 'in', [...codes])
+    .execute();
+  return new Set(rows.map(({ code }) => code));
+}

@@ -1,0 +1,113 @@
+import { sql } from 'kysely';
+import type { ShopTransaction } from '#server/db/in-shop.ts';
+import type { DB } from '#server/db/tables.ts';
+import type { PushBook, PushWrites } from './push-book.ts';
+import type { BucketRow } from './push-facts.ts';
+
+/** PostgreSQL takes 65,535 parameters a statement. */
+const MOST_PARAMETERS = 60_000;
+
+/** Writes all that a push's operations did, in the order that foreign keys ask for, one statement a table. */
+export async function writePush(trx: ShopTransaction, shopId: string, seq: number, book: PushBook): Promise<void> {
+  const { writes } = book;
+  await insertAll(trx, 'operations', writes.operations);
+  await countInstalls(trx, shopId, writes);
+  await insertAll(trx, 'batches', writes.batches);
+  await releaseBatches(trx, shopId, seq, writes);
+  const tubs = [...book.tubs.values()];
+  await insertAll(trx, 'buckets', tubs.filter(({ id }) => book.newTubs.has(id)).map(asInserted));
+  await changeTubs(
+    trx,
+    shopId,
+    tubs.filter(({ id }) => !book.newTubs.has(id)),
+  );
+  await insertAll(trx, 'additions', writes.additions);
+  await insertAll(trx, 'bucketComposition', writes.bucketComposition);
+  await insertAll(trx, 'bucketParents', writes.bucketParents);
+  await insertAll(trx, 'movements', writes.movements);
+  await insertAll(trx, 'lotMovements', writes.lotMovements);
+  await drawFromLots(trx, shopId, seq, writes);
+}
+
+async function insertAll(trx: ShopTransaction, table: keyof DB, rows: readonly object[]): Promise<void> {
+  if (rows.length === 0) return;
+  const size = Math.max(1, Math.floor(MOST_PARAMETERS / Object.keys(rows[0] ?? {}).length));
+  for (let at = 0; at < rows.length; at += size) {
+    await trx
+      .insertInto(table)
+      .values(rows.slice(at, at + size) as never)
+      .execute();
+  }
+}
+
+/** A JSON column takes text: the driver would send an array as a PostgreSQL array. */
+function asInserted({ lab, seen, ...row }: BucketRow) {
+  return { ...row, lab: lab === null ? null : JSON.stringify(lab), seen: JSON.stringify(seen) };
+}
+
+/** The last number of each install that has arrived: gaps are found by it, nothing is gated. */
+async function countInstalls(trx: ShopTransaction, shopId: string, { operations }: PushWrites): Promise<void> {
+  const last = new Map<string, number>();
+  for (const { installId, deviceSeq } of operations) last.set(installId, Math.max(last.get(installId) ?? 0, deviceSeq));
+  for (const [id, deviceSeq] of last) {
+    await trx
+      .updateTable('installs')
+      .set((eb) => ({ lastSeq: eb.fn<number>('greatest', ['lastSeq', eb.val(deviceSeq)]) }))
+      .where('shopId', '=', shopId)
+      .where('id', '=', id)
+      .execute();
+  }
+}
+
+async function releaseBatches(trx: ShopTransaction, shopId: string, seq: number, writes: PushWrites): Promise<void> {
+  for (const { batchId, light, releasedBy } of writes.releases) {
+    await trx
+      .updateTable('batches')
+      .set({ state: 'released', light, releasedBy, changeSeq: seq })
+      .where('shopId', '=', shopId)
+      .where('id', '=', batchId)
+      .execute();
+  }
+}
+
+async function changeTubs(trx: ShopTransaction, shopId: string, tubs: readonly BucketRow[]): Promise<void> {
+  if (tubs.length === 0) return;
+  const changed = tubs.map((tub) => ({
+    id: tub.id,
+    tare_mg: tub.tareMg,
+    balance_mg: tub.balanceMg,
+    location_id: tub.locationId,
+    state: tub.state,
+    grade: tub.grade,
+    released: tub.released,
+    needs_recount: tub.needsRecount,
+    seen: tub.seen,
+    generation: tub.generation,
+    job_id: tub.jobId,
+    change_seq: tub.changeSeq,
+  }));
+  await sql`
+    update buckets b set tare_mg = x.tare_mg, balance_mg = x.balance_mg, location_id = x.location_id, state = x.state,
+      grade = x.grade, released = x.released, needs_recount = x.needs_recount, seen = x.seen,
+      generation = x.generation, job_id = x.job_id, change_seq = x.change_seq
+    from jsonb_to_recordset(${JSON.stringify(changed)}::jsonb) as x(id uuid, tare_mg bigint, balance_mg bigint,
+      location_id uuid, state text, grade text, released boolean, needs_recount boolean, seen jsonb, generation int,
+      job_id uuid, change_seq bigint)
+    where b.shop_id = ${shopId} and b.id = x.id`.execute(trx);
+}
+
+async function drawFromLots(
+  trx: ShopTransaction,
+  shopId: string,
+  seq: number,
+  { lotMovements }: PushWrites,
+): Promise<void> {
+  const drawn = new Map<string, number>();
+  for (const { lotId, deltaMg } of lotMovements) drawn.set(lotId, (drawn.get(lotId) ?? 0) + deltaMg);
+  if (drawn.size === 0) return;
+  const changed = [...drawn].map(([id, delta]) => ({ id, delta }));
+  await sql`
+    update lots l set balance_mg = l.balance_mg + x.delta, change_seq = ${seq}
+    from jsonb_to_recordset(${JSON.stringify(changed)}::jsonb) as x(id uuid, delta bigint)
+    where l.shop_id = ${shopId} and l.id = x.id`.execute(trx);
+}
