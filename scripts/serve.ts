@@ -2,7 +2,10 @@ import { createShopServer } from './create-shop-server.ts';
 import { distFolder } from './paths.mjs';
 import { portError } from './port.mjs';
 
-const graceMilliseconds = 5_000;
+/** What is under way may take as long as a statement may. */
+const graceMilliseconds = 30_000;
+/** Longer than a proxy's 60 or 75 s: it must be the proxy that closes an idle connection, or a request is lost between. */
+const keepAliveMilliseconds = 80_000;
 const port = Number(process.env['PORT'] ?? 4321);
 const host = process.env['HOST'] ?? '127.0.0.1';
 
@@ -11,10 +14,14 @@ const server = await createShopServer(distFolder, {
   trustProxy: process.env['TRUST_PROXY'] === 'on',
 });
 
-/** Lets requests under way finish, for a few seconds at most. */
+server.keepAliveTimeout = keepAliveMilliseconds;
+server.headersTimeout = keepAliveMilliseconds + 5_000;
+
+/** Takes nothing new, lets requests under way finish, and ends with them. */
 function stop() {
   server.close(() => process.exit(0));
-  server.closeIdleConnections();
+  // A connection is idle again as soon as its request is answered.
+  setInterval(() => server.closeIdleConnections(), 200).unref();
   setTimeout(() => server.closeAllConnections(), graceMilliseconds).unref();
 }
 

@@ -3,26 +3,40 @@ import { readCookie } from '#server/auth/cookies.ts';
 import { routeAccess } from '#server/auth/route-access.ts';
 import { findSession } from '#server/auth/sessions.ts';
 import { findStation } from '#server/auth/stations.ts';
-import { database } from '#server/db/connection.ts';
+import { MOST_CONNECTIONS, database } from '#server/db/connection.ts';
+import { isPassing } from '#server/db/passing-error.ts';
+import { Gate, busy } from '#server/http/gate.ts';
 import { HttpProblem, problemResponse } from '#server/http/http-problem.ts';
 import { log } from '#server/http/log.ts';
+import { observe } from '#server/http/observe.ts';
 
 const SAFE = ['GET', 'HEAD', 'OPTIONS'];
+/** Fewer than the pool has connections, so that nobody waits for one; a whole shop's stations may wait their turn. */
+const gate = new Gate({ most: MOST_CONNECTIONS - 2, waiting: 500, patienceMs: 20_000 });
+/** Tell how the server is while it is busy. */
+const UNGATED = ['/api/health', '/api/ready', '/api/metrics'];
 
 /** Origin, session, station and the route table before anything else; prerendered pages have none of it. */
 export const onRequest = defineMiddleware(async (context, next) => {
   if (context.isPrerendered || !context.url.pathname.startsWith('/api/')) return next();
-  try {
-    await admitRequest(context);
-    const response = await next();
-    response.headers.set('Cache-Control', 'no-store');
-    return response;
-  } catch (error) {
-    return refuse(error, context.url.pathname);
-  }
+  const started = performance.now();
+  const response = await answer(context, next).catch((error: unknown) => refuse(error, context.url.pathname));
+  response.headers.set('Cache-Control', 'no-store');
+  observe(context, response.status, performance.now() - started, gate.load);
+  return response;
 });
 
-async function admitRequest(context: Parameters<Parameters<typeof defineMiddleware>[0]>[0]): Promise<void> {
+type Context = Parameters<Parameters<typeof defineMiddleware>[0]>[0];
+
+function answer(context: Context, next: () => Promise<Response>): Promise<Response> {
+  const work = async () => {
+    await admitRequest(context);
+    return next();
+  };
+  return UNGATED.includes(context.url.pathname) ? work() : gate.pass(work);
+}
+
+async function admitRequest(context: Context): Promise<void> {
   const { request, url, cookies, locals } = context;
   if (!SAFE.includes(request.method) && request.headers.get('origin') !== url.origin) {
     throw new HttpProblem(403, 'foreign-origin', 'Foreign origin', 'This request comes from another site.');
@@ -45,13 +59,16 @@ function requireStation(station: App.Locals['station']): void {
 }
 
 function refuse(error: unknown, path: string): Response {
-  const headers = { 'Cache-Control': 'no-store' };
-  if (error instanceof HttpProblem) return problemResponse(error.problem, { ...headers, ...error.headers });
+  if (error instanceof HttpProblem) return problemResponse(error.problem, error.headers);
   log.error(
     { path, error: error instanceof Error ? { name: error.name, message: error.message } : String(error) },
     'request failed',
   );
+  if (isPassing(error)) {
+    const { problem, headers } = busy();
+    return problemResponse(problem, headers);
+  }
   const problem = new HttpProblem(500, 'server-error', 'Server error', 'The server failed. It will be tried again.')
     .problem;
-  return problemResponse(problem, headers);
+  return problemResponse(problem);
 }

@@ -17,6 +17,8 @@ const schema = z.object({
     .transform((text): unknown => JSON.parse(text))
     .pipe(z.object({ keys: z.array(privateKey).min(1) })),
   PUBLIC_ORIGIN: z.string().optional(),
+  /** Whoever names it may read /api/metrics; without it nobody may. */
+  METRICS_TOKEN: z.string().min(16).optional(),
 });
 export type Env = z.infer<typeof schema>;
 

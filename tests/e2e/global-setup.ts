@@ -11,6 +11,8 @@ declare module 'vitest' {
     baseUrl: string;
     /** The owner's connection. */
     databaseUrl: string;
+    /** The application's connection. */
+    appUrl: string;
     /** A superuser's connection to the same database, to look past row level security. */
     superuserUrl: string;
     serverPid: number;
@@ -32,6 +34,7 @@ export default async function setup(project: TestProject) {
     });
     project.provide('baseUrl', server.url);
     project.provide('databaseUrl', database.ownerUrl);
+    project.provide('appUrl', database.appUrl);
     project.provide(
       'superuserUrl',
       Object.assign(new URL(cluster.clusterUrl), { pathname: new URL(database.ownerUrl).pathname }).href,

@@ -57,6 +57,9 @@ export async function openPushStation(): Promise<void> {
   });
 }
 
+/** The application's connection. */
+export const databaseUrl = () => fresh.appUrl;
+
 export async function closePushStation(): Promise<void> {
   await db.destroy();
   await fresh.drop();

@@ -3,6 +3,8 @@ export type Access = 'public' | 'session' | 'station';
 
 export const routeAccess: Readonly<Record<string, Access>> = {
   'GET /api/health': 'public',
+  'GET /api/ready': 'public',
+  'GET /api/metrics': 'public',
   'GET /api/auth/keys': 'public',
   'POST /api/auth/sign-in': 'public',
   'POST /api/auth/sign-out': 'public',

@@ -23,8 +23,11 @@ const types = {
   }) as typeof pg.types.getTypeParser,
 };
 
+/** Of one process. */
+export const MOST_CONNECTIONS = 10;
+
 /** No named statements and no settings at connect: the pool may stand behind a transaction pooler. */
-export function openDatabase(connectionString: string, max = 10): Database {
+export function openDatabase(connectionString: string, max = MOST_CONNECTIONS): Database {
   const pool = new pg.Pool({ connectionString, max, types, connectionTimeoutMillis: 5000 });
   pool.on('error', () => {
     // An idle connection that breaks is replaced by the next query.

@@ -4,7 +4,11 @@ import type { DB } from './tables.ts';
 
 export type ShopTransaction = Transaction<DB>;
 
-/** The one way to a shop's rows: the setting holds for this transaction only, and row level security reads it. */
+/** Longer than any statement of ours takes; a lock that is not given by then is asked for again by the station. */
+const STATEMENT_TIMEOUT = '30s';
+const LOCK_TIMEOUT = '5s';
+
+/** The one way to a shop's rows: the settings hold for this transaction only, and row level security reads the first. */
 export function inShop<T>(
   db: Database,
   shopId: string,
@@ -15,7 +19,9 @@ export function inShop<T>(
     .transaction()
     .setIsolationLevel(options.snapshot === true ? 'repeatable read' : 'read committed');
   return transaction.execute(async (trx) => {
-    await sql`select set_config('app.shop_id', ${shopId}, true)`.execute(trx);
+    await sql`select set_config('app.shop_id', ${shopId}, true),
+      set_config('statement_timeout', ${STATEMENT_TIMEOUT}, true),
+      set_config('lock_timeout', ${LOCK_TIMEOUT}, true)`.execute(trx);
     return work(trx);
   });
 }

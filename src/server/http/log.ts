@@ -1,4 +1,4 @@
 import pino from 'pino';
 
-/** Structured lines without bodies, cookies or secrets. */
-export const log = pino({ base: null, level: process.env['LOG_LEVEL'] ?? 'info' });
+/** Structured lines without bodies, cookies or secrets; LOG_LEVEL=info adds one a request. */
+export const log = pino({ base: null, level: process.env['LOG_LEVEL'] ?? 'warn' });

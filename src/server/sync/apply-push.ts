@@ -4,6 +4,7 @@ import { type Problem, makeProblem } from '#contract/problem.ts';
 import { PROTOCOL, type PushOutcome, type PushRequest, type PushResponse } from '#contract/push.ts';
 import type { Database } from '#server/db/connection.ts';
 import { type ShopTransaction, inShop } from '#server/db/in-shop.ts';
+import { isPassing } from '#server/db/passing-error.ts';
 import { log } from '#server/http/log.ts';
 import { RejectedError } from './apply-context.ts';
 import { applyOperation } from './apply-operation.ts';
@@ -171,11 +172,4 @@ function problemOf(error: unknown, entry: Received): Problem {
   log.error({ opId: entry.opId, error: error instanceof Error ? error.message : String(error) }, 'operation failed');
   const detail = 'The server could not store this entry. Show it to a manager.';
   return makeProblem(422, 'not-storable', 'Not accepted', detail);
-}
-
-/** A lost connection, a time-out or a deadlock decides nothing: the station sends the whole push again. */
-function isPassing(error: unknown): boolean {
-  const code = (error as { code?: unknown }).code;
-  if (typeof code === 'string') return /^(08|40|53|55P03|57|ECONN|EPIPE|ETIMEDOUT)/.test(code);
-  return /Connection terminated|timeout exceeded/.test(String(error));
 }
