@@ -24,6 +24,9 @@ export interface Node extends Bounded {
 
 /** Of the batch: a bound nearer than this is reached. */
 const REACHED = 1e-6;
+const MOST_TURNS = 4;
+/** What a part of a bucket gains more than it does, a little different for each: among equals the simplex goes round in circles. */
+const TIE = 1e-8;
 
 /** Branch and bound over one batch at prices, each node followed down to a plan; masses as parts of the greatest batch. */
 export class PricedSearch {
@@ -51,9 +54,15 @@ export class PricedSearch {
     this.program = this.programOf();
     const lp = this.blank();
     const columns = Int32Array.from(batch.buckets, (_, k) => ((limits.most[k] as number) > 0 ? k : -1));
+    columns.forEach((column, k) => column === -1 && lp.setBounds(k, 0, 0));
     const root = { lp, bound: Infinity, opened: 0, columns };
     const solved = this.settle(root, -Infinity);
     if (solved !== undefined) this.open.push(solved);
+  }
+
+  /** Once there is one, what proves goes before what finds. */
+  get hasPlan(): boolean {
+    return this.best > 0;
   }
 
   /** Goes on. @param nodes how many nodes to look into at most @returns whether that was enough */
@@ -119,6 +128,7 @@ export class PricedSearch {
 
   private branch(node: Node, { candidate, row }: Point): (Node | undefined)[] | undefined {
     if (candidate === -1 && row === -1) return undefined;
+    // Little ink, but it decides about whole buckets.
     if (row !== -1) return this.branchFresh(node, row);
     if (node.columns[candidate] !== candidate) return this.branchGap(node, candidate);
     const closed = this.child(node, node.opened, node.columns.with(candidate, -1), (lp) =>
@@ -157,10 +167,11 @@ export class PricedSearch {
     const { rows, firstSlack } = this.batch.relaxation;
     const { component, most } = rows[r] as (typeof rows)[number];
     const enough = (this.batch.leastFresh[component] as number) / this.unit;
-    return [
-      this.child(node, node.opened, node.columns, (lp) => lp.setBounds(firstSlack + r, 0, 0)),
-      this.child(node, node.opened, node.columns, (lp) => lp.setBounds(firstSlack + r, enough, most / WHOLE)),
-    ];
+    const none = this.child(node, node.opened, node.columns, (lp) => lp.setBounds(firstSlack + r, 0, 0));
+    const some = this.child(node, node.opened, node.columns, (lp) =>
+      lp.setBounds(firstSlack + r, enough, most / WHOLE),
+    );
+    return (some?.bound ?? 0) > (none?.bound ?? 0) ? [some, none] : [none, some];
   }
 
   private child(node: Node, opened: number, columns: Int32Array, decide: (lp: DualSimplex) => void): Node | undefined {
@@ -176,7 +187,10 @@ export class PricedSearch {
   /** Solves it; undefined when there is no plan in it above the cutoff. */
   private settle(node: Node, cutoff: number): Node | undefined {
     const paid = node.opened * this.worth;
-    const outcome = node.lp.solve(cutoff + paid);
+    let outcome = node.lp.solve(cutoff + paid);
+    // Cut although it is above the cutoff: it has only run out of its pivots.
+    for (let turn = 0; turn < MOST_TURNS && outcome === 'cut' && node.lp.objective - paid > cutoff; turn++)
+      outcome = node.lp.solve(cutoff + paid);
     node.bound = Math.min(node.bound, node.lp.objective - paid);
     if (outcome === 'optimal' && node.bound > cutoff) return node;
     if (outcome !== 'infeasible') this.end(node.bound);
@@ -208,7 +222,7 @@ export class PricedSearch {
     this.gains.forEach((gain, k) => {
       const { most } = this.limitsOf(k);
       upper[k] = most;
-      gains[k] = most === 0 ? 0 : gain - this.worth / most;
+      gains[k] = most === 0 ? 0 : gain - this.worth / most + (TIE * (1 + (k % 89))) / 89;
       if (countSlack !== -1) matrix[rows.length * width + k] = most === 0 ? 0 : 1 / most;
     });
     return { ...program, gains, upper, matrix };

@@ -48,7 +48,7 @@ export function inspectPoint(search: PricedSearch, node: Node): Point {
   }
   const row = shortRow(search, node);
   if (row !== -1 || count > batch.ask.maximumBuckets) isPlan = false;
-  return { taken, value: isPlan ? value : -Infinity, candidate, row: candidate === -1 ? row : -1 };
+  return { taken, value: isPlan ? value : -Infinity, candidate, row: candidate === -1 || search.hasPlan ? row : -1 };
 }
 
 /** The row of a component whose fresh ink would be more than nothing and too little to weigh. */
