@@ -1,9 +1,9 @@
 import { DualSimplex } from './dual-simplex.ts';
-import type { BoxedProgram } from './tableau.ts';
+import { WHOLE } from './mass.ts';
 import type { Limits, QueueBatch } from './queue-batch.ts';
 import { type Bounded, NodeHeap } from './queue-heap.ts';
 import { type Point, inspectPoint } from './queue-point.ts';
-import { WHOLE } from './mass.ts';
+import type { BoxedProgram } from './tableau.ts';
 
 /** What a batch gives when a mg of each bucket has a price. Values in mg: reused − prices − κ·buckets. */
 export interface Priced {
@@ -110,11 +110,11 @@ export class PricedSearch {
     return one;
   }
 
-  /** Candidates that would lower the bound to the best value or less: the cost of what is opened at least, and of opening. */
+  /** Opened, these would lower the bound to the best value or less: by what they cost at least, and by counting as one. */
   private closeHopeless({ lp, bound, columns, opened }: Node): void {
     const { countSlack } = this.batch.relaxation;
     const opening = this.worth + (countSlack === -1 ? 0 : lp.multiplier(countSlack));
-    const room = opened < this.batch.ask.maximumBuckets ? bound - this.best - REACHED : 0;
+    const room = opened < this.batch.ask.maximumBuckets ? bound - this.best : 0;
     for (let k = 0; k < columns.length; k++) {
       const cost = columns[k] === k ? lp.multiplier(k) : 0;
       if (cost <= 0) continue;

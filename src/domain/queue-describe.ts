@@ -6,8 +6,8 @@ import type { QueuePrices } from './queue-prices.ts';
 import type { BatchPlan } from './queue-round.ts';
 import type { QueueShelf } from './queue-shelf.ts';
 
-/** mg for each batch: what floating-point sums of up to 10⁹ mg err by is far less. */
-const MARGIN = 1;
+/** Of the batch: what a bound in floating point may err by, and what counts as reached in the search for it. */
+const MARGIN = 2e-7;
 
 /** Tells the plans on the shelf as those of the batches. */
 export class QueueDescription {
@@ -31,13 +31,18 @@ export class QueueDescription {
       (sum, { ask, place }) => sum + ask.readability * (this.shelf.plans[place]?.takings.length ?? 0),
       0,
     );
-    return this.gap <= rounding + MARGIN * this.batches.length;
+    return this.gap <= rounding + this.margin;
   }
 
   /** mg that better plans could gain. */
   private get gap(): number {
-    const bound = Math.ceil(this.prices.bound) + MARGIN * this.batches.length;
+    const bound = Math.ceil(this.prices.bound) + this.margin;
     return Math.max(0, bound - this.sum((plan) => plan.value));
+  }
+
+  /** mg */
+  private get margin(): number {
+    return this.batches.reduce((sum, batch) => sum + marginOf(batch), 0);
   }
 
   private sum(of: (plan: BatchPlan) => number): Milligrams {
@@ -52,12 +57,13 @@ export class QueueDescription {
     return found;
   }
 
-  private planOf({ ask, place, search }: QueueBatch): FoldInPlan {
+  private planOf(of: QueueBatch): FoldInPlan {
+    const { ask, place, search } = of;
     const { value, batch, reused, takings, fresh } = this.shelf.plans[place] as BatchPlan;
     const isRanged = ask.batch.maximum > ask.batch.minimum;
     const start = isRanged ? ask.batch.minimum : 0;
-    const alone = Math.ceil(this.prices.alone[place] as number) + MARGIN;
-    const isProven = alone - value <= ask.readability * Math.max(1, takings.length) + MARGIN;
+    const alone = Math.ceil(this.prices.alone[place] as number) + marginOf(of);
+    const isProven = alone - value <= ask.readability * Math.max(1, takings.length) + marginOf(of);
     const used = new Set(takings.map(({ bucket }) => this.idOf(bucket)));
     return {
       status: !isProven ? 'gap' : used.size === 0 ? 'none' : 'best',
@@ -76,4 +82,9 @@ export class QueueDescription {
   private idOf(bucket: number): string {
     return this.problem.buckets[bucket]?.id ?? '';
   }
+}
+
+/** mg */
+function marginOf({ buckets, search }: QueueBatch): number {
+  return buckets.length === 0 ? 0 : 1 + Math.ceil(MARGIN * search.greatest);
 }

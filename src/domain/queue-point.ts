@@ -14,41 +14,47 @@ const NOTHING = 1e-9;
 const OFF = 1e-7;
 
 export function inspectPoint(search: PricedSearch, node: Node): Point {
-  const { limits, unit, worth, gains, batch } = search;
+  const { worth, gains, batch } = search;
   const taken = new Float64Array(gains.length);
+  const point = { taken, value: -node.opened * worth, candidate: -1, row: shortRow(search, node) };
   let count = node.opened;
-  let value = -node.opened * worth;
-  let candidate = -1;
-  let score = OFF;
-  let isPlan = true;
-  const costs = worth > 0 || batch.relaxation.countSlack !== -1;
+  let most = OFF;
+  let isPlan = point.row === -1;
   for (let k = 0; k < gains.length; k++) {
     const column = node.columns[k] as number;
     const part = column === -1 ? 0 : node.lp.value(column);
     if (part <= NOTHING) continue;
     taken[k] = part;
-    value += (gains[k] as number) * part;
-    const [least, partly, most] = [limits.least[k], limits.partly[k], limits.most[k]] as [number, number, number];
     const isOpened = column !== k;
-    if (!isOpened) {
-      count += 1;
-      value -= worth;
-    }
-    const mass = part * unit;
-    const slack = OFF * unit;
-    const isShort = mass < (partly >= least ? least : most) - slack;
-    const isSliver = mass > partly + slack && mass < most - slack;
-    if (isShort || isSliver) isPlan = false;
-    const off = isOpened || !costs ? 0 : Math.sqrt(Math.min(mass, most - mass) * mass) / unit;
-    const total = off + Number(isShort) + Number(isSliver);
-    if (total > score) {
-      score = total;
-      candidate = k;
-    }
+    count += Number(!isOpened);
+    point.value += (gains[k] as number) * part - Number(!isOpened) * worth;
+    const breach = breachOf(search, k, part);
+    if (breach > 0) isPlan = false;
+    const open = breach + (isOpened ? 0 : openness(search, k, part));
+    if (open <= most) continue;
+    most = open;
+    point.candidate = k;
   }
-  const row = shortRow(search, node);
-  if (row !== -1 || count > batch.ask.maximumBuckets) isPlan = false;
-  return { taken, value: isPlan ? value : -Infinity, candidate, row: candidate === -1 || search.hasPlan ? row : -1 };
+  if (!isPlan || count > batch.ask.maximumBuckets) point.value = -Infinity;
+  if (point.candidate !== -1 && !search.hasPlan) point.row = -1;
+  return point;
+}
+
+/** 1 when it is too little to take out, or when a sliver would stay. */
+function breachOf({ limits, unit }: PricedSearch, k: number, part: number): number {
+  const [least, partly, most] = [limits.least[k], limits.partly[k], limits.most[k]] as [number, number, number];
+  const mass = part * unit;
+  const slack = OFF * unit;
+  const isShort = mass < (partly >= least ? least : most) - slack;
+  const isSliver = mass > partly + slack && mass < most - slack;
+  return Number(isShort || isSliver);
+}
+
+/** How far the mass is from nothing and from all, where it counts that a bucket is opened. */
+function openness({ limits, unit, worth, batch }: PricedSearch, k: number, part: number): number {
+  if (worth === 0 && batch.relaxation.countSlack === -1) return 0;
+  const whole = (limits.most[k] as number) / unit;
+  return Math.sqrt(Math.max(0, Math.min(part, whole - part)) * part);
 }
 
 /** The row of a component whose fresh ink would be more than nothing and too little to weigh. */

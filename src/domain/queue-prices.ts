@@ -8,6 +8,7 @@ const MIXED = 0.4;
 const FIRST_NODES = 100;
 const MOST_NODES = 4000;
 const NODES_A_STEP = 100;
+const MOST_ROUNDS = 500;
 /** Of the bound: rounds that lower it by less stand still. */
 const STILL = 2e-5;
 /** …and how near to the bound the best mix of plans then comes: it is no longer the prices that keep it up. */
@@ -71,10 +72,10 @@ export class QueuePrices {
       const count = this.columnCount;
       const mixed = this.prices.map((price, i) => price + MIXED * ((mix.prices[i] as number) - price));
       yield* this.ask(mixed);
-      const isStill = this.bound >= before * (1 - STILL);
+      const isStill = before - this.bound <= STILL * Math.abs(this.bound);
       const isOld = this.columnCount === count;
-      if (isStill && isOld && this.nodes >= MOST_NODES) return;
-      if (isStill && (isOld || this.bound - mix.value < MIX_NEAR * this.bound)) this.lookCloser();
+      if ((isStill && isOld && this.nodes >= MOST_NODES) || this.round === MOST_ROUNDS) return;
+      if (isStill && (isOld || this.bound - mix.value < MIX_NEAR * Math.abs(this.bound))) this.lookCloser();
       mix = solveMaster(this.columns, this.usable, this.musts);
       yield;
     }
@@ -91,9 +92,7 @@ export class QueuePrices {
 
   private *ask(prices: Float64Array): Generator<void, void> {
     const bounds = new Float64Array(this.batches.length);
-    for (const batch of this.batches) {
-      bounds[batch.place] = yield* this.valueAt(batch, prices);
-    }
+    for (const batch of this.batches) bounds[batch.place] = yield* this.valueAt(batch, prices);
     const shelf = this.usable.reduce((sum, mass, i) => sum + mass * (prices[i] as number), 0);
     const bound = bounds.reduce((sum, each) => sum + each, shelf);
     if (bound >= this.bound) return;

@@ -13,14 +13,8 @@ const IDLE_EACH = 12;
 const IDLE_LEAST = 60;
 /** Prices first, then plans at these prices; then better prices and better plans by turns. */
 export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePlans> {
-  const usable = problem.buckets.map((bucket) => bucket.usable);
-  const batches = problem.batches.map((_, place) => prepareBatch(problem, place));
-  const fresh = batches.map((batch) => told(`Batch ${batch.id}`, () => freshPlan(batch)));
   const musts = mustsOf(problem);
-  const prices = new QueuePrices(batches, usable, new Set(musts.map(({ bucket }) => bucket)));
-  const shelf = new QueueShelf(usable, batches);
-  const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
-  const description = new QueueDescription(problem, batches, shelf, prices);
+  const { batches, prices, recreation, description } = prepareWeek(problem, musts);
   const rounds = prices.rounds();
   while (prices.round === 0) rounds.next();
   recreation.planAll();
@@ -39,10 +33,19 @@ export function* planWeek(problem: QueueProblem): Generator<QueuePlans, QueuePla
     }
     idle = step.value ? 0 : idle + 1;
   }
-  const must = musts.find(({ bucket }) => shelf.left[bucket] !== 0);
-  if (must === undefined) return description.found;
-  const { id } = problem.buckets[must.bucket] as QueueProblem['buckets'][number];
-  throw new FoldInError(`No plans were found that use up bucket ${id} in these batches: allow it to stay.`);
+  if (recreation.isEmptied) return description.found;
+  const names = musts.map(({ bucket }) => problem.buckets[bucket]?.id).join(', ');
+  throw new FoldInError(`No plans were found for these batches that use up what must be (${names}): allow it to stay.`);
+}
+
+function prepareWeek(problem: QueueProblem, musts: readonly Must[]) {
+  const usable = problem.buckets.map((bucket) => bucket.usable);
+  const batches = problem.batches.map((_, place) => prepareBatch(problem, place));
+  const fresh = batches.map((batch) => told(`Batch ${batch.id}`, () => freshPlan(batch)));
+  const prices = new QueuePrices(batches, usable, new Set(musts.map(({ bucket }) => bucket)));
+  const shelf = new QueueShelf(usable, batches);
+  const recreation = new QueueRecreation(batches, shelf, prices, fresh, musts);
+  return { batches, prices, recreation, description: new QueueDescription(problem, batches, shelf, prices) };
 }
 
 function mustsOf({ batches, buckets }: QueueProblem): Must[] {
