@@ -49,12 +49,12 @@ async function admitRequest(context: Context): Promise<void> {
     access === 'session' ? await findSession(database(), readCookie(cookies, 'session', url), now) : undefined;
   if (access === 'session' && locals.person === undefined)
     throw new HttpProblem(401, 'signed-out', 'Signed out', 'Sign in first.');
-  if (access === 'station') requireStation(locals.station);
+  if (access === 'station' || access === 'handing-in') requireStation(locals.station, access);
 }
 
-function requireStation(station: App.Locals['station']): void {
+function requireStation(station: App.Locals['station'], access: 'station' | 'handing-in'): void {
   if (station === undefined) throw new HttpProblem(401, 'no-station', 'No station', 'Sign in on this device first.');
-  if (station.revoked)
+  if (station.revoked && !(access === 'handing-in' && station.mayHandIn))
     throw new HttpProblem(403, 'station-revoked', 'Station revoked', 'This device was revoked. Ask a manager.');
 }
 

@@ -50,6 +50,7 @@ async function fetchPage(station: Station, cursor: string, deps: SyncDeps): Prom
   const response = await deps.fetch(`/api/sync/pull?${query}`).catch(() => undefined);
   if (response === undefined) return { kind: 'offline' };
   if (response.status === 409 && (await codeOf(response)) === 'must-refetch') return { refetch: true };
+  if (response.status === 403 && (await codeOf(response)) === 'station-revoked') await clearCache(station.cache);
   const refusal = await refusalOf(response, deps.now());
   if (refusal !== null) return refusal;
   const text = await response.text().catch(() => '');
@@ -101,6 +102,11 @@ function rowOf(name: TableName, row: unknown): unknown {
  */
 async function startOver({ cache, outbox }: Station): Promise<void> {
   await outbox.ops.where('status').equals('sent').modify({ status: 'waiting', changeSeq: null });
+  await clearCache(cache);
+}
+
+/** The rows only: what was recorded here is never thrown away. */
+async function clearCache(cache: Cache): Promise<void> {
   const tables = tableNames.map((name) => cache.rows(name));
   await cache.transaction('rw', [...tables, cache.meta], async () => {
     for (const table of tables) await table.clear();

@@ -90,6 +90,22 @@ describe('push', () => {
     expect(await quarantined(first.opId)).toEqual(['op-id-reused']);
   });
 
+  test('a revoked station hands in what it recorded: kept whole, nothing applied, what was stored before stays', async () => {
+    const [before, after] = [record(await aBatch(), 'mixer'), record(await aBatch(), 'mixer')];
+    await push([before]);
+    const results = await push([before, after], true);
+    expect(results).toMatchObject([
+      { outcome: 'duplicate' },
+      { outcome: 'rejected', problem: { code: 'station-revoked' } },
+    ]);
+    expect(await quarantined(after.opId)).toEqual(['station-revoked']);
+    const batchId = (after.body as Awaited<ReturnType<typeof aBatch>>['body']).batchId;
+    const stored = await inShop(db, shopId, (trx) =>
+      trx.selectFrom('batches').select('id').where('id', '=', batchId).execute(),
+    );
+    expect(stored).toEqual([]);
+  });
+
   test('an operator may not mix, and the refusal is audited', async () => {
     const [result] = await push([record(await aBatch(), 'operator')]);
     expect(result).toMatchObject({ outcome: 'rejected', problem: { code: 'wrong-role' } });

@@ -95,10 +95,10 @@ export function record(body: OperationBody, role: Role) {
   return { ...envelope, deviceTime: now.toISOString(), clock, seen: {}, ...body };
 }
 
-export async function push(ops: unknown[]) {
+export async function push(ops: unknown[], revoked = false) {
   const answer = await applyPush(
     db,
-    station,
+    { ...station, revoked },
     { protocol: 1, requestId: uuid(), ops },
     { now: () => now, randomId: uuid },
   );

@@ -1,5 +1,8 @@
-/** Who may call a route: anybody, a live session, or an enrolled station. A route that is not listed is refused. */
-export type Access = 'public' | 'session' | 'station';
+/**
+ * Who may call a route: anybody, a live session, an enrolled station, or one that was revoked and hands in its queue. A
+ * route that is not listed is refused.
+ */
+export type Access = 'public' | 'session' | 'station' | 'handing-in';
 
 export const routeAccess: Readonly<Record<string, Access>> = {
   'GET /api/health': 'public',
@@ -9,6 +12,6 @@ export const routeAccess: Readonly<Record<string, Access>> = {
   'POST /api/auth/sign-in': 'public',
   'POST /api/auth/sign-out': 'public',
   'POST /api/auth/renew': 'session',
-  'POST /api/sync/push': 'station',
+  'POST /api/sync/push': 'handing-in',
   'GET /api/sync/pull': 'station',
 };

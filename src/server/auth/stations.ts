@@ -9,7 +9,12 @@ export interface KnownStation {
   stationId: string;
   name: string;
   revoked: boolean;
+  /** Revoked, and still heard: what it recorded is kept for a manager to look at, and nothing is told to it. */
+  mayHandIn: boolean;
 }
+
+/** Days after it was revoked in which a station may still hand in what it recorded. */
+const HAND_IN_DAYS = 30;
 
 export interface Install {
   id: string;
@@ -34,7 +39,10 @@ export async function findStation(
       .returning(['id', 'name', 'revokedAt'])
       .executeTakeFirst(),
   );
-  return row && { shopId: token.shopId, stationId: row.id, name: row.name, revoked: row.revokedAt !== null };
+  if (row === undefined) return undefined;
+  const { id: stationId, name, revokedAt } = row;
+  const mayHandIn = revokedAt === null || now.getTime() - revokedAt.getTime() < HAND_IN_DAYS * 86_400_000;
+  return { shopId: token.shopId, stationId, name, revoked: revokedAt !== null, mayHandIn };
 }
 
 /** A browser's first sign-in makes it a station of the shop, with a name that is free. */
@@ -54,7 +62,7 @@ export async function enrolStation(
   const { cookie, hash } = makeToken(shopId);
   const expiresAt = new Date(now.getTime() + STATION_DAYS * 86_400_000);
   await trx.insertInto('stations').values({ shopId, id, name, tokenSha256: hash, expiresAt, lastSeen: now }).execute();
-  return { station: { shopId, stationId: id, name, revoked: false }, cookie };
+  return { station: { shopId, stationId: id, name, revoked: false, mayHandIn: true }, cookie };
 }
 
 /** The install among those that the browser offers, or a new one with a code prefix that nobody has. */

@@ -25,6 +25,8 @@ export interface PushDeps {
 export interface PushStation {
   shopId: string;
   stationId: string;
+  /** Nothing of it is applied any more; all of it is kept in quarantine. */
+  revoked?: boolean;
 }
 
 /** An operation as it came, readable or not. */
@@ -132,7 +134,13 @@ async function nextSeq(trx: ShopTransaction, shopId: string): Promise<number> {
   return seq;
 }
 
-function takeOne(book: PushBook, { shopId }: PushStation, entry: Received, seq: number, deps: PushDeps): PushOutcome {
+function takeOne(
+  book: PushBook,
+  { shopId, revoked }: PushStation,
+  entry: Received,
+  seq: number,
+  deps: PushDeps,
+): PushOutcome {
   if ('problem' in entry.parsed) throw new RejectedError('unreadable', `Not readable. ${entry.parsed.problem}.`);
   const { operation } = entry.parsed;
   const { opId } = operation;
@@ -142,6 +150,8 @@ function takeOne(book: PushBook, { shopId }: PushStation, entry: Received, seq: 
       throw new RejectedError('op-id-reused', 'Another entry has this number already.');
     return { opId, outcome: 'duplicate', changeSeq: known.changeSeq };
   }
+  if (revoked === true)
+    throw new RejectedError('station-revoked', 'This device was revoked. A manager looks at what it recorded.');
   requireAuthorised(book.facts, operation);
   const receivedAt = deps.now();
   const at = correctedTime(operation, receivedAt);
