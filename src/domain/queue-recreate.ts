@@ -14,7 +14,7 @@ export interface Must {
 }
 
 /** Of so many turns one makes all plans anew. */
-const ALL_EVERY = 30;
+const ALL_EVERY = 15;
 
 /** Plans of all batches, made better by taking some back and making them anew from what is then left. */
 export class QueueRecreation {
