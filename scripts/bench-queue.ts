@@ -58,7 +58,7 @@ async function runOne(ask: QueueAsk, seed: number): Promise<void> {
       `first plans ${firstMs.toFixed(0)} ms (${verdict(firstMs <= FIRST_MS)}), longest step ${longestMs.toFixed(0)} ms; ` +
       `at ${SEARCH_MS / 1000} s reused ${kilograms(found.reused)}, gap ${(100 * gap).toFixed(2)} % ` +
       `(at most ${(100 * most).toFixed(1)} %: ${verdict(gap <= most)}), ${verified ? 'verified' : 'NOT VERIFIED'}; ` +
-      `HiGHS ${(highs.ms / 1000).toFixed(0)} s ${kilograms(theirs)} (${verdict(found.reused >= theirs)})`,
+      `HiGHS ${(highs.ms / 1000).toFixed(0)} s ${theirs === 0 ? 'no plan yet' : kilograms(theirs)} (${verdict(found.reused >= theirs)})`,
   );
 }
 
