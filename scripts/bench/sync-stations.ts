@@ -41,7 +41,14 @@ export async function enrolStations(db: Database, shopId: string, count: number)
     for (let n = 0; n < count; n++) {
       const [stationId, installId, grantId] = [uuid(), uuid(), uuid()];
       const { cookie, hash } = makeToken(shopId);
-      const station = { shopId, id: stationId, name: `Bench ${n}`, tokenSha256: hash, expiresAt: later, lastSeen: now };
+      const station = {
+        shopId,
+        id: stationId,
+        name: `Bench ${stationId.slice(-8)}`,
+        tokenSha256: hash,
+        expiresAt: later,
+        lastSeen: now,
+      };
       await trx.insertInto('stations').values(station).execute();
       const prefix = codePrefix(Number(installs) + 100 + n) ?? '';
       await trx.insertInto('installs').values({ shopId, id: installId, stationId, codePrefix: prefix }).execute();

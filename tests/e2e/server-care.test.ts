@@ -1,48 +1,23 @@
-import { type ChildProcess, spawn } from 'node:child_process';
 import { setTimeout as sleep } from 'node:timers/promises';
 import pg from 'pg';
 import { v7 as uuid } from 'uuid';
 import { afterAll, beforeAll, describe, expect, inject, test } from 'vitest';
 import { demoSignIns } from '#scripts/demo-sign-ins.mjs';
-import { makeGrantKeys } from '#scripts/grant-keys.mjs';
-import { projectFolder } from '#scripts/paths.mjs';
-import { findFreePort } from '#scripts/port.mjs';
+import { type OwnServer, startOwnServer } from './support/own-server.ts';
 
 const METRICS_TOKEN = 'metrics-token-of-this-test';
 const mixer = demoSignIns.find(({ email }) => email.startsWith('mixer')) as { email: string; password: string };
 
-let server: ChildProcess;
-let ended: Promise<number | null>;
+let server: OwnServer;
 let baseUrl: string;
-let printed = '';
 
-/** A server of this test's own, which writes a line for each request. */
 beforeAll(async () => {
-  const port = String(await findFreePort());
-  baseUrl = `http://127.0.0.1:${port}`;
-  const env = {
-    ...process.env,
-    DATABASE_URL: inject('appUrl'),
-    GRANT_KEYS: makeGrantKeys(),
-    HOST: '127.0.0.1',
-    PORT: port,
-    LOG_LEVEL: 'info',
-    METRICS_TOKEN,
-    NODE_ENV: 'production',
-  };
-  server = spawn(process.execPath, ['--import', 'tsx', 'scripts/serve.ts'], {
-    cwd: projectFolder,
-    env,
-    stdio: ['ignore', 'pipe', 'pipe'],
-  });
-  ended = new Promise((resolve) => server.once('exit', resolve));
-  server.stdout?.on('data', (chunk: Buffer) => (printed += chunk.toString()));
-  server.stderr?.on('data', (chunk: Buffer) => (printed += chunk.toString()));
-  while (!printed.includes('ready')) await sleep(100);
+  server = await startOwnServer(inject('appUrl'), { LOG_LEVEL: 'info', METRICS_TOKEN });
+  baseUrl = server.baseUrl;
 }, 60_000);
 afterAll(async () => {
   server.kill('SIGTERM');
-  await ended;
+  await server.ended;
 });
 
 async function post(path: string, body: unknown, cookie = ''): Promise<Response> {
@@ -88,6 +63,7 @@ describe('a server in service', () => {
       admitted.cookies.join('; '),
     );
     await sleep(300);
+    const printed = server.printed();
     expect(printed).toContain('"route":"POST /api/auth/sign-in"');
     expect(printed).toContain('"route":"POST /api/sync/push"');
     const secrets = [
@@ -133,7 +109,7 @@ test('told to stop in the middle of a push, it answers it and only then ends', a
   await other.query('rollback');
   const answer = (await (await pushed).json()) as { results: unknown[] };
   expect(answer.results).toMatchObject([{ opId, outcome: 'rejected' }]);
-  expect(await ended).toBe(0);
+  expect(await server.ended).toBe(0);
   await other.query('begin');
   await other.query(`select set_config('app.shop_id', $1, true)`, [shop.id]);
   const kept = await other.query('select 1 from quarantine where shop_id = $1 and op_id = $2', [shop.id, opId]);
