@@ -7,6 +7,8 @@ export interface Surroundings {
   alone: <T>(name: string, run: () => Promise<T>) => Promise<T | undefined>;
   /** @returns cancels */
   after: (ms: number, run: () => void) => () => void;
+  /** After what runs now, and never inside a transaction of its. */
+  soon: (run: () => void) => void;
   /** 0 to 1 */
   jitter: () => number;
 }
@@ -30,6 +32,7 @@ export const thisBrowser: Surroundings = {
     const timer = setTimeout(run, ms);
     return () => clearTimeout(timer);
   },
+  soon: (run) => void setTimeout(run, 0),
   jitter: Math.random,
 };
 

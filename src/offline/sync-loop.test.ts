@@ -36,6 +36,7 @@ function makeSurroundings() {
       timers.push(timer);
       return () => void (timers.includes(timer) && timers.splice(timers.indexOf(timer), 1));
     },
+    soon: (run) => void setTimeout(run, 0),
     jitter: () => 0.5,
   };
   return { around, timers, wake: () => wakeUp() };

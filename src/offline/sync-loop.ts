@@ -54,7 +54,7 @@ export function startSync(station: Station, deps: SyncDeps = here, around: Surro
     if (deps.now().getTime() >= holdUntil) void sendNow();
   };
   const recorded = function (this: { onsuccess?: unknown }) {
-    this.onsuccess = () => setTimeout(wake, 0);
+    this.onsuccess = () => around.soon(wake);
   };
   const sleep = around.onWake(wake);
   station.outbox.ops.hook('creating', recorded);
