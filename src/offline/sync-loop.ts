@@ -30,7 +30,8 @@ export function startSync(station: Station, deps: SyncDeps = here, around: Surro
   let stopped = false;
   let running: Promise<void> | undefined;
   let askedAgain = false;
-  let holdUntil = 0;
+  /** Ends by a timer: the device's clock may be set back a year. */
+  let held = false;
 
   const runUntilQuiet = async () => {
     do {
@@ -39,10 +40,13 @@ export function startSync(station: Station, deps: SyncDeps = here, around: Surro
       const result = await around.alone(syncLock(station.installId), () => runOnce(station, deps, around, state));
       if (stopped) break;
       const wait = waitAfter(result, around);
-      holdUntil = result?.kind === 'failed' ? deps.now().getTime() + (result.retryAfterMs ?? 0) : 0;
-      cancelTimer = around.after(wait, wake);
+      held = result?.kind === 'failed' && result.retryAfterMs !== null;
+      cancelTimer = around.after(wait, () => {
+        held = false;
+        wake();
+      });
       if (result !== undefined) state.set(describe(state.getSnapshot(), result, deps.now(), wait));
-    } while (askedAgain && deps.now().getTime() >= holdUntil);
+    } while (askedAgain && !held);
     running = undefined;
   };
   const sendNow = (): Promise<void> => {
@@ -51,7 +55,7 @@ export function startSync(station: Station, deps: SyncDeps = here, around: Surro
     return (running ??= runUntilQuiet());
   };
   const wake = () => {
-    if (deps.now().getTime() >= holdUntil) void sendNow();
+    if (!held) void sendNow();
   };
   const recorded = function (this: { onsuccess?: unknown }) {
     this.onsuccess = () => around.soon(wake);
