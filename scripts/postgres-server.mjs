@@ -54,9 +54,9 @@ export function findRunningPort(cluster) {
   return undefined;
 }
 
-/** @param {Cluster} cluster @returns {Promise<number>} the port on 127.0.0.1 */
-export async function startCluster(cluster) {
-  const port = await findFreePort();
+/** @param {Cluster} cluster @param {number} [given] @returns {Promise<number>} the port on 127.0.0.1: a free one, or the given one */
+export async function startCluster(cluster, given) {
+  const port = given ?? (await findFreePort());
   const options = [
     '-h',
     '127.0.0.1',

@@ -1,5 +1,6 @@
 import { buildWhenStale } from './build-when-stale.mjs';
 import { enterCluster } from './cluster.mjs';
+import { requireProxyPrograms } from './proxy-programs.mjs';
 import { StartError, say } from './say.mjs';
 import { requireNotStopped } from './stopping.mjs';
 import { testParts } from './test-parts.mjs';
@@ -14,6 +15,7 @@ import { ensureTestTools } from './test-tools.mjs';
 export async function runTests(names) {
   const chosen = chooseParts(names);
   if (chosen.some(({ needs }) => needs.includes('browser'))) ensureTestTools();
+  if (chosen.some(({ needs }) => needs.includes('proxies'))) requireProxyPrograms();
   const total = chosen.some(({ needs }) => needs.includes('database'))
     ? await withTestCluster(() => runParts(chosen))
     : await runParts(chosen);

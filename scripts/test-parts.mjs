@@ -7,7 +7,7 @@ import { checkTableTypes } from './check-table-types.mjs';
 import { runVitest } from './run-vitest.mjs';
 
 /** @typedef {{ passed: number, failed: number }} Count */
-/** @typedef {'database' | 'build' | 'browser'} Need */
+/** @typedef {'database' | 'build' | 'browser' | 'proxies'} Need */
 /** @typedef {{ name: string, what: string, needs: Need[], run: () => Promise<Count> }} TestPart */
 
 const hasSyncTests = fs.existsSync(path.join(projectFolder, 'tests/sync'));
@@ -46,6 +46,12 @@ export const testParts = [
     what: 'built server and real browser',
     needs: ['database', 'build', 'browser'],
     run: () => runVitest('e2e'),
+  },
+  {
+    name: 'copies',
+    what: 'several servers, nginx, PgBouncer, kills',
+    needs: ['build', 'proxies'],
+    run: () => runVitest('copies'),
   },
 ];
 

@@ -37,8 +37,17 @@ const e2e = {
   hookTimeout: 120_000,
   fileParallelism: false,
 };
+/** Several server processes behind nginx and PgBouncer, each file on a cluster of its own. */
+const copies = {
+  name: 'copies',
+  include: ['tests/copies/**/*.test.ts'],
+  globalSetup: ['tests/copies/global-setup.ts'],
+  testTimeout: 180_000,
+  hookTimeout: 180_000,
+  fileParallelism: false,
+};
 
-const projects = [unit, lint, server, ...(existsSync(`${root}/tests/sync`) ? [sync] : []), e2e];
+const projects = [unit, lint, server, ...(existsSync(`${root}/tests/sync`) ? [sync] : []), e2e, copies];
 
 export default defineConfig({
   root,

@@ -28,14 +28,21 @@ export const MOST_CONNECTIONS = 10;
 
 /** No named statements and no settings at connect: the pool may stand behind a transaction pooler. */
 export function openDatabase(connectionString: string, max = MOST_CONNECTIONS): Database {
+  return new Kysely<DB>({
+    dialect: new PostgresDialect({ pool: postgresPool(connectionString, max) }),
+    plugins: [new CamelCasePlugin({ maintainNestedObjectKeys: true })],
+  });
+}
+
+/** Masses come back as safe integers, dates as text. */
+export function postgresPool(connectionString: string, max: number): pg.Pool {
   const pool = new pg.Pool({ connectionString, max, types, connectionTimeoutMillis: 5000 });
   pool.on('error', () => {
     // An idle connection that breaks is replaced by the next query.
   });
-  return new Kysely<DB>({
-    dialect: new PostgresDialect({ pool }),
-    plugins: [new CamelCasePlugin({ maintainNestedObjectKeys: true })],
-  });
+  // One that breaks in the middle of a request fails that request; unheard, the event would end the process.
+  pool.on('connect', (client) => client.on('error', () => {}));
+  return pool;
 }
 
 let shared: Database | undefined;
