@@ -46,6 +46,23 @@ test('a later pull goes on from its cursor, without progress', async () => {
   expect(await station.cache.meta.get('position')).toMatchObject({ cursor: 'c9', seq: 9 });
 });
 
+test('the pages of a later pull are written together, or none of them', async () => {
+  const station = await makeStation();
+  await station.cache.meta.put({ name: 'position', cursor: 'c7', seq: 7, completeAt: START.toISOString() });
+  const [first, second] = [tubRow({ code: 'AC111111' }), tubRow({ code: 'AC222222' })];
+  const half = { cursor: 'c8', seq: 8, more: true, changes: [put(first)] };
+  const rest = { cursor: 'c9', seq: 9, changes: [put(second), put({ ...first, balanceMg: 5 })] };
+  const cut = answering({ [PULL]: (_, n) => (n === 0 ? pullAnswer(half) : offline()) });
+  expect(await pullChanges(station, cut.deps, ignore)).toEqual({ kind: 'offline' });
+  expect(await readShelf(station)).toEqual([]);
+  expect(await station.cache.meta.get('position')).toMatchObject({ cursor: 'c7', seq: 7 });
+  const whole = answering({ [PULL]: (_, n) => pullAnswer([half, rest][n]) });
+  expect(await pullChanges(station, whole.deps, ignore)).toEqual({ kind: 'done' });
+  expect(whole.calls.map(({ query }) => query.get('cursor'))).toEqual(['c7', 'c8']);
+  expect((await readBucketByCode(station, 'AC111111'))?.balanceMg).toBe(5);
+  expect(await station.cache.meta.get('position')).toMatchObject({ cursor: 'c9', seq: 9 });
+});
+
 test('a row that was deleted is gone, a row that changed is replaced', async () => {
   const station = await makeStation();
   const [kept, gone] = [tubRow(), tubRow()];

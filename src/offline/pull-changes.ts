@@ -14,7 +14,10 @@ export interface LoadProgress {
 
 const PAGE = 1000;
 
-/** Pulls pages from the cursor until there is no more; a load from the beginning reports its progress. */
+/**
+ * Pulls pages from the cursor until there is no more, and writes them at once: in between, a row may hold less than the
+ * position says. A load from the beginning is written page by page and reports its progress; nothing is shown of it yet.
+ */
 export async function pullChanges(
   station: Station,
   deps: SyncDeps,
@@ -22,19 +25,25 @@ export async function pullChanges(
 ): Promise<SyncResult> {
   const progress: LoadProgress = { done: 0, total: null, bytes: 0 };
   let startedOver = false;
+  let pages: PullResponse[] = [];
   for (;;) {
     const position = await station.cache.meta.get('position');
     const first = (position?.completeAt ?? null) === null;
-    const page = await fetchPage(station, position?.cursor ?? '', deps);
+    const page = await fetchPage(station, pages.at(-1)?.cursor ?? position?.cursor ?? '', deps);
     if ('kind' in page) return page;
     if (page.refetch) {
       if (startedOver) return { kind: 'failed', problem: 'The shop cannot be loaded just now.', retryAfterMs: null };
       await startOver(station);
       startedOver = true;
+      pages = [];
       continue;
     }
-    await settleOwn(station, page.answer, deps.now());
-    await writePage(station.cache, page.answer, position?.completeAt ?? null, deps.now());
+    pages.push(page.answer);
+    if (first || !page.answer.more) {
+      await settleOwn(station, pages, deps.now());
+      await writePages(station.cache, pages, position?.completeAt ?? null, deps.now());
+      pages = [];
+    }
     progress.done += page.answer.changes.length;
     progress.bytes += page.bytes;
     if (page.answer.remaining !== null) progress.total = progress.done + page.answer.remaining;
@@ -61,10 +70,10 @@ async function fetchPage(station: Station, cursor: string, deps: SyncDeps): Prom
 }
 
 /** Own operations that the rows contain count as sent, whether or not the answer to their push arrived. */
-async function settleOwn(station: Station, answer: PullResponse, now: Date): Promise<void> {
+async function settleOwn(station: Station, pages: readonly PullResponse[], now: Date): Promise<void> {
   const { ops } = station.outbox;
   await station.outbox.transaction('rw', ops, async () => {
-    for (const { opId, changeSeq } of answer.own) {
+    for (const { opId, changeSeq } of pages.flatMap(({ own }) => own)) {
       const entry = await ops.get(opId);
       if (entry?.status !== 'waiting') continue;
       await ops.update(opId, { status: 'sent', changeSeq, sentAt: entry.sentAt ?? now.toISOString() });
@@ -72,12 +81,20 @@ async function settleOwn(station: Station, answer: PullResponse, now: Date): Pro
   });
 }
 
-/** Rows and position in one transaction: never one without the other. */
-async function writePage(cache: Cache, answer: PullResponse, completeAt: string | null, now: Date): Promise<void> {
+/** Rows and position in one transaction: never one without the other. A row that came twice counts as it came last. */
+async function writePages(
+  cache: Cache,
+  pages: readonly PullResponse[],
+  completeAt: string | null,
+  now: Date,
+): Promise<void> {
+  const last = pages.at(-1);
+  if (last === undefined) return;
+  const latest = new Map(pages.flatMap(({ changes }) => changes).map((change) => [change.table + change.id, change]));
   const tables = tableNames.map((name) => cache.rows(name));
   await cache.transaction('rw', [...tables, cache.meta], async () => {
     for (const name of tableNames) {
-      const changes = answer.changes.filter((change) => change.table === name);
+      const changes = [...latest.values()].filter((change) => change.table === name);
       const gone = changes.flatMap((change) => ('deleted' in change ? [change.id] : []));
       const kept = changes.flatMap((change) => ('row' in change ? [rowOf(name, change.row)] : []));
       if (gone.length > 0) await cache.rows(name).bulkDelete(gone);
@@ -85,9 +102,9 @@ async function writePage(cache: Cache, answer: PullResponse, completeAt: string 
     }
     await cache.meta.put({
       name: 'position',
-      cursor: answer.cursor,
-      seq: answer.seq,
-      completeAt: completeAt ?? (answer.more ? null : now.toISOString()),
+      cursor: last.cursor,
+      seq: last.seq,
+      completeAt: completeAt ?? (last.more ? null : now.toISOString()),
     });
   });
 }

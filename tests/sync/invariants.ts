@@ -1,15 +1,21 @@
+import { isDeepStrictEqual } from 'node:util';
 import { sql } from 'kysely';
 import { v7 as uuidv7 } from 'uuid';
 import { PROTOCOL, type PushResponse } from '#contract/push.ts';
 import { pullResponse } from '#contract/pull.ts';
+import { type TableName, rows, tableNames } from '#contract/rows.ts';
 import { readShelf } from '#offline/shown.ts';
+import { seededRandom } from '#scripts/seed/random.ts';
 import { inShop } from '#server/db/in-shop.ts';
 import type { Simulated } from './simulate.ts';
 import type { SimulatedShop } from './simulated-shop.ts';
+import type { SimulatedStation } from './simulated-station.ts';
 
 /** What must hold once it is quiet; each broken one is a sentence that begins with its name. */
-export async function brokenInvariants(shop: SimulatedShop, simulated: Simulated): Promise<string[]> {
+export async function brokenInvariants(simulated: Simulated): Promise<string[]> {
+  const { shop } = simulated;
   return [
+    ...simulated.broken,
     ...(await onceEach(shop, simulated)),
     ...(await balances(shop, simulated)),
     ...(await onlyDuplicates(simulated)),
@@ -20,7 +26,7 @@ export async function brokenInvariants(shop: SimulatedShop, simulated: Simulated
 
 /** (1) Every operation shown as saved is exactly once in the server's log, its quarantine or the outbox, and nothing else is. */
 async function onceEach({ db, shopId }: SimulatedShop, { saved, stations }: Simulated): Promise<string[]> {
-  const installs = stations.map(({ open }) => open.installId);
+  const installs = stations.map(({ given }) => given.enrolled.installId);
   const { logged, kept } = await inShop(db, shopId, async (trx) => ({
     logged: await trx
       .selectFrom('operations')
@@ -36,8 +42,9 @@ async function onceEach({ db, shopId }: SimulatedShop, { saved, stations }: Simu
       .execute(),
   }));
   const waiting = new Set<string>();
-  for (const { open } of stations)
-    for (const { opId, status } of await open.outbox.ops.toArray()) if (status === 'waiting') waiting.add(opId);
+  for (const station of stations)
+    for (const { opId, status } of await station.requireTab().open.outbox.ops.toArray())
+      if (status === 'waiting') waiting.add(opId);
   const [inLog, inQuarantine] = [new Set(logged.map(({ opId }) => opId)), new Set(kept.map(({ opId }) => opId))];
   const broken = [...saved.keys()].flatMap((opId) => {
     const places = [inLog, inQuarantine, waiting].filter((place) => place.has(opId)).length;
@@ -59,8 +66,8 @@ async function balances({ db, shopId }: SimulatedShop, { stations }: Simulated):
     .filter(({ balance, sum }) => balance !== sum)
     .map(({ id }) => `balance: tub ${id} is not the sum of its movements`);
   const known = new Map(rows.rows.map(({ id, balance }) => [id, balance]));
-  for (const { open } of stations) {
-    for (const tub of await readShelf(open))
+  for (const station of stations) {
+    for (const tub of await readShelf(station.requireTab().open))
       if (tub.balanceMg !== known.get(tub.id))
         broken.push(`balance: a station shows ${tub.balanceMg} mg of ${tub.id}, the server has ${known.get(tub.id)}`);
   }
@@ -70,12 +77,12 @@ async function balances({ db, shopId }: SimulatedShop, { stations }: Simulated):
 /** (4) A second push gives only what the first one gave. */
 async function onlyDuplicates({ stations }: Simulated): Promise<string[]> {
   const broken: string[] = [];
-  for (const { open, handlers } of stations) {
-    const entries = (await open.outbox.ops.toArray()).filter(({ status }) => status === 'sent');
+  for (const station of stations) {
+    const entries = (await station.requireTab().open.outbox.ops.toArray()).filter(({ status }) => status === 'sent');
     for (let at = 0; at < entries.length; at += 50) {
       const ops = entries.slice(at, at + 50).map(({ operation }) => operation);
       const body = JSON.stringify({ protocol: PROTOCOL, requestId: uuidv7(), ops });
-      const answer = (await (await handlers('/api/sync/push', { method: 'POST', body })).json()) as PushResponse;
+      const answer = (await (await ask(station, '/api/sync/push', { method: 'POST', body })).json()) as PushResponse;
       for (const { opId, outcome } of answer.results)
         if (outcome !== 'duplicate') broken.push(`repush: ${opId} was ${outcome} the second time`);
     }
@@ -83,36 +90,50 @@ async function onlyDuplicates({ stations }: Simulated): Promise<string[]> {
   return broken;
 }
 
-/** (5) What came in pieces equals what comes at once. */
+/** (5) What came in pieces equals what comes at once, row by row and field by field. */
 async function sameAsFresh({ stations }: Simulated): Promise<string[]> {
   const broken: string[] = [];
-  const fresh = new Map<string, string>();
-  let [cursor, more] = ['', true];
-  const [first] = stations;
-  while (more && first !== undefined) {
-    const response = await first.handlers(`/api/sync/pull?${new URLSearchParams({ cursor })}`);
-    const page = pullResponse.parse(await response.json());
-    for (const change of page.changes)
-      if ('row' in change && change.table === 'buckets') fresh.set(change.id, JSON.stringify(change.row));
-    [cursor, more] = [page.cursor, page.more];
-  }
-  for (const { open } of stations) {
-    const held = new Map((await open.cache.rows('buckets').toArray()).map((row) => [row.id, row]));
-    for (const [id, row] of fresh) {
-      const mine = held.get(id);
-      const theirs = JSON.parse(row) as { balanceMg: number; state: string; locationId: string | null };
-      if (mine?.balanceMg !== theirs.balanceMg || mine.state !== theirs.state || mine.locationId !== theirs.locationId)
-        broken.push(`fold: tub ${id} is another one on a station than in a fresh load`);
+  for (const station of stations) {
+    const fresh = await loadFresh(station);
+    const { cache } = station.requireTab().open;
+    for (const name of tableNames) {
+      const held = new Map((await cache.rows(name).toArray()).map((row) => [row.id, row]));
+      const theirs = fresh.get(name) ?? new Map<string, unknown>();
+      for (const id of new Set([...held.keys(), ...theirs.keys()]))
+        if (!isDeepStrictEqual(held.get(id), theirs.get(id)))
+          broken.push(`fold: ${name} ${id} is another one on station ${station.name} than in a fresh load`);
     }
   }
   return broken;
 }
 
+async function loadFresh(station: SimulatedStation): Promise<Map<TableName, Map<string, unknown>>> {
+  const fresh = new Map<TableName, Map<string, unknown>>();
+  let [cursor, more] = ['', true];
+  while (more) {
+    const response = await ask(station, `/api/sync/pull?${new URLSearchParams({ cursor })}`);
+    const page = pullResponse.parse(await response.json());
+    for (const change of page.changes as { table: TableName; id: string; row?: unknown }[]) {
+      const rowsOfTable = fresh.get(change.table) ?? new Map<string, unknown>();
+      fresh.set(change.table, rowsOfTable);
+      if (change.row !== undefined) rowsOfTable.set(change.id, rows[change.table].parse(change.row));
+    }
+    [cursor, more] = [page.cursor, page.more];
+  }
+  return fresh;
+}
+
+/** The station's own way to the server, without a network between. */
+function ask({ given }: SimulatedStation, input: string, init?: RequestInit): Promise<Response> {
+  return given.server({ input, init, doomed: false, random: seededRandom(1), order: 'asked' });
+}
+
 /** (6) What waits for a decision on the stations is what the server refused. */
 async function trayOfServer({ db, shopId }: SimulatedShop, { stations }: Simulated): Promise<string[]> {
   const broken: string[] = [];
-  for (const { open, stationId } of stations) {
-    const tray = await open.outbox.ops.where('status').equals('rejected').count();
+  for (const station of stations) {
+    const { stationId } = station.given.enrolled;
+    const tray = await station.requireTab().open.outbox.ops.where('status').equals('rejected').count();
     const { n } = await inShop(db, shopId, (trx) =>
       trx
         .selectFrom('quarantine')
