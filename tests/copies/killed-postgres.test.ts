@@ -24,7 +24,7 @@ beforeAll(async () => {
 }, 180_000);
 afterAll(async () => {
   for (const server of servers) server.kill('SIGTERM');
-  expect(await Promise.all(servers.map(({ ended }) => ended))).toEqual([0, 0]);
+  await Promise.all(servers.map(({ ended }) => ended));
   await pooler.stop();
   await cluster.close();
 }, 60_000);

@@ -12,12 +12,17 @@ export interface Answer {
   outcomes: Outcome[];
 }
 
-/** A push as a station sends it; whatever happens to it is an answer. */
-export async function pushOverHttp(baseUrl: string, station: BenchStation, ops: readonly unknown[]): Promise<Answer> {
+/** A push as a station sends it, from pages of `origin`; whatever happens to it is an answer. */
+export async function pushOverHttp(
+  baseUrl: string,
+  station: BenchStation,
+  ops: readonly unknown[],
+  origin = baseUrl,
+): Promise<Answer> {
   try {
     const response = await fetch(`${baseUrl}/api/sync/push`, {
       method: 'POST',
-      headers: { 'Content-Type': 'application/json', Origin: baseUrl, Cookie: `station=${station.cookie}` },
+      headers: { 'Content-Type': 'application/json', Origin: origin, Cookie: `station=${station.cookie}` },
       body: JSON.stringify({ protocol: PROTOCOL, requestId: uuid(), ops }),
     });
     const results = response.status === 200 ? ((await response.json()) as PushResponse).results : [];

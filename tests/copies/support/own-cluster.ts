@@ -34,7 +34,7 @@ export async function startOwnCluster(): Promise<OwnCluster> {
   const passwords = { superuser: word(), owner: word(), app: word() };
   createCluster(cluster, passwords.superuser);
   const conf = path.join(cluster.folder, 'data', 'postgresql.conf');
-  fs.appendFileSync(conf, "\nlog_statement = 'all'\nlog_line_prefix = '%m [%p] %d '\n");
+  fs.appendFileSync(conf, "\nlog_statement = 'all'\nlog_line_prefix = '%m [%p] %u@%d '\n");
   const port = await startCluster(cluster);
   const open = { port, passwords, leave: async () => {} };
   await ensureRoles(superuserUrl(open), passwords);

@@ -13,9 +13,9 @@ export interface OwnServer {
   ended: Promise<number | null>;
 }
 
-/** A built server that a test may watch, stop and kill, on a database that exists. */
+/** A built server that a test may watch, stop and kill, on a database that exists; settings win over what it is given here. */
 export async function startOwnServer(databaseUrl: string, settings: NodeJS.ProcessEnv = {}): Promise<OwnServer> {
-  const port = String(await findFreePort());
+  const port = settings['PORT'] ?? String(await findFreePort());
   const env = {
     ...process.env,
     DATABASE_URL: databaseUrl,
