@@ -1,3 +1,4 @@
+import type { ServerResponse } from 'node:http';
 import { createShopServer } from './create-shop-server.ts';
 import { distFolder } from './paths.mjs';
 import { portError } from './port.mjs';
@@ -17,8 +18,19 @@ const server = await createShopServer(distFolder, {
 server.keepAliveTimeout = keepAliveMilliseconds;
 server.headersTimeout = keepAliveMilliseconds + 5_000;
 
-/** Takes nothing new, lets requests under way finish, and ends with them. */
+/** Answers that are not sent yet. */
+const underWay = new Set<ServerResponse>();
+let stopping = false;
+server.prependListener('request', (_, response) => {
+  underWay.add(response);
+  response.once('close', () => underWay.delete(response));
+  if (stopping) response.setHeader('Connection', 'close');
+});
+
+/** Takes nothing new, lets requests under way finish, and ends with them; a proxy is told not to send on their connections. */
 function stop() {
+  stopping = true;
+  for (const response of underWay) if (!response.headersSent) response.setHeader('Connection', 'close');
   server.close(() => process.exit(0));
   // A connection is idle again as soon as its request is answered.
   setInterval(() => server.closeIdleConnections(), 200).unref();

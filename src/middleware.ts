@@ -5,7 +5,7 @@ import { findSession } from '#server/auth/sessions.ts';
 import { findStation } from '#server/auth/stations.ts';
 import { MOST_CONNECTIONS, database } from '#server/db/connection.ts';
 import { isPassing } from '#server/db/passing-error.ts';
-import { Gate, busy } from '#server/http/gate.ts';
+import { Gate, type Party, busy } from '#server/http/gate.ts';
 import { HttpProblem, problemResponse } from '#server/http/http-problem.ts';
 import { log } from '#server/http/log.ts';
 import { observe } from '#server/http/observe.ts';
@@ -33,7 +33,13 @@ function answer(context: Context, next: () => Promise<Response>): Promise<Respon
     await admitRequest(context);
     return next();
   };
-  return UNGATED.includes(context.url.pathname) ? work() : gate.pass(work);
+  return UNGATED.includes(context.url.pathname) ? work() : gate.pass(partyOf(context), work);
+}
+
+/** Of one shop, so that no other waits behind its rush; the cookie names it and is not trusted for more than that. */
+function partyOf({ url, cookies }: Context): Party {
+  const shop = readCookie(cookies, 'station', url)?.split('.')[0] ?? 'no shop';
+  return url.pathname === '/api/sync/push' ? { name: `push ${shop}`, most: 2 } : { name: shop, most: 5 };
 }
 
 async function admitRequest(context: Context): Promise<void> {

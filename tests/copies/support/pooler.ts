@@ -19,7 +19,7 @@ export interface Pooler {
 }
 
 /** Fewer connections to PostgreSQL than the processes have to the pooler, so that one serves many clients in turn. */
-const SERVER_CONNECTIONS = 4;
+const SERVER_CONNECTIONS = 6;
 
 /** PgBouncer in transaction pooling before the cluster, as Debian packs it, on a port of its own. */
 export async function startPooler(cluster: OwnCluster): Promise<Pooler> {
