@@ -12,9 +12,8 @@ function generate(file: string, connectionString: string): void {
   const words = ['--dialect', 'postgres', '--camel-case', '--out-file', file, '--numeric-parser', 'string'];
   const mapping = ['--type-mapping', '{"int8":"number","timestamptz":"Date","date":"string","jsonb":"unknown"}'];
   const program = path.resolve('node_modules/.bin/kysely-codegen');
-  execFileSync(program, [...words, ...mapping, '--exclude-pattern', 'kysely_*', '--url', connectionString], {
-    stdio: 'pipe',
-  });
+  const tables = ['--include-pattern', 'public.*', '--exclude-pattern', 'kysely_*'];
+  execFileSync(program, [...words, ...mapping, ...tables, '--url', connectionString], { stdio: 'pipe' });
 }
 
 if (process.argv.includes('--check')) {

@@ -3,6 +3,8 @@ import path from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { FileMigrationProvider, Kysely, Migrator, PostgresDialect } from 'kysely';
 import pg from 'pg';
+import { makeQueues } from '#server/jobs/make-queues.ts';
+import { roles } from './databases.mjs';
 
 const migrationFolder = path.resolve(path.dirname(fileURLToPath(import.meta.url)), '../migrations');
 
@@ -13,6 +15,7 @@ async function migrateToLatest(connectionString: string) {
   const migrator = new Migrator({ db, provider: new FileMigrationProvider({ fs, path, migrationFolder }) });
   const { error, results } = await migrator.migrateToLatest();
   for (const { status, migrationName } of results ?? []) console.log(`migration ${migrationName}: ${status}`);
+  if (error === undefined) await makeQueues({ connectionString, query: (text) => pool.query(text) }, roles.app);
   await db.destroy();
   if (error) throw error;
 }
