@@ -1,5 +1,6 @@
 import * as z from 'zod/mini';
 import { addedMilligrams, bucketCode, instant, massChange, milligrams, note, shortText, uuid } from './identifiers.ts';
+import { shiftReported } from './shift-report.ts';
 
 /** One thing put into the pot: fresh from a component's lot, or out of a bucket. */
 export const addition = z.discriminatedUnion('kind', [
@@ -21,6 +22,14 @@ export const addition = z.discriminatedUnion('kind', [
     actualMg: addedMilligrams,
     /** True when the bucket was scraped empty: what the books still hold is booked as wall loss. */
     empties: z.boolean(),
+    /** What this station showed of it: fixed here, so that the batch is the same in whatever order entries arrive. */
+    displayed: z.optional(
+      z.strictObject({
+        balanceMg: z.int(),
+        grade: z.enum(['untouched', 'returned', 'assumed', 'unknown']),
+        generation: z.int().check(z.minimum(0)),
+      }),
+    ),
     at: instant,
     actorId: uuid,
   }),
@@ -118,6 +127,7 @@ export const operationBodies = {
   'bucket-recounted': bucketRecounted,
   'bucket-discarded': bucketDiscarded,
   'bucket-adopted': bucketAdopted,
+  'shift-reported': shiftReported,
 } as const;
 
 export type OperationType = keyof typeof operationBodies;

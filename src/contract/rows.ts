@@ -4,6 +4,22 @@ import { role } from './roles.ts';
 
 const id = { id: uuid };
 const lab = z.nullable(z.object({ l: z.number(), a: z.number(), b: z.number() }));
+/** What a station needs of a tub's entries to go on from here; null in rows from before there were traces. */
+const seen = z.record(z.string(), z.int());
+const trace = z.object({
+  open: z.array(
+    z.object({
+      installId: z.string(),
+      kind: z.enum(['spend', 'spend-weighed', 'recount', 'discard']),
+      at: seen,
+    }),
+  ),
+  beyond: z.optional(seen),
+  told: z.partialRecord(
+    z.enum(['state', 'locationId', 'jobId', 'tareMg', 'ink']),
+    z.object({ size: z.int(), opId: z.string() }),
+  ),
+});
 const shares = z.array(z.object({ componentId: uuid, ppb: z.int() }));
 
 /** Rows as a station holds them; each is the whole of its entity, children included. Masses in mg, shares in ppb. */
@@ -142,6 +158,7 @@ export const rows = {
     balanceMg: z.int(),
     needsRecount: z.boolean(),
     seen: z.record(uuid, z.int()),
+    trace: z.optional(z.nullable(trace)),
     composition: shares,
     useBy: z.nullable(z.string()),
     cureC: z.nullable(z.int()),

@@ -1,5 +1,6 @@
 import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
+import { noTrace } from '#domain/tub-trace.ts';
 import { correctedTime } from './overlay-bucket.ts';
 
 /** A tub from before the books, as the shelf shows it until the server's row arrives. */
@@ -26,6 +27,7 @@ export function adoptedTub(operation: Extract<Operation, { type: 'bucket-adopted
     balanceMg: mass,
     needsRecount: false,
     seen: { [operation.installId]: operation.deviceSeq },
+    trace: noTrace(),
     composition: body.composition,
     useBy: null,
     cureC: null,

@@ -1,6 +1,6 @@
 import { v7 as uuidv7 } from 'uuid';
 import { describe, expect, test } from 'vitest';
-import type { OperationBody } from '#contract/operation-bodies.ts';
+import type { Addition, OperationBody } from '#contract/operation-bodies.ts';
 import type { Row } from '#contract/rows.ts';
 import { batchMixed, fresh, fromTub, returned } from '#tests/support/operations.ts';
 import { facts, operationOf, shownOf } from '#tests/support/overlay.ts';
@@ -53,6 +53,23 @@ describe('a mixed batch', () => {
     const mixed = batchMixed([fromTub(leftover.id, 250_000, true)]);
     const shown = foldPending(shownOf(leftover), [operationOf(mixed)], known);
     expect(shown.buckets.get(leftover.id)).toMatchObject({ balanceMg: 0, state: 'empty', locationId: null });
+  });
+
+  test('that scraped a tub empty takes what was shown of it: what others used meanwhile is flagged, not hidden', () => {
+    const leftover = tubRow({ composition: pure(blue), balanceMg: 200_000, seen: { other: 3 } });
+    const displayed = { balanceMg: 260_000, grade: 'untouched' as const, generation: 0 };
+    const mixed = batchMixed([{ ...fromTub(leftover.id, 250_000, true), displayed } as Addition]);
+    const shown = foldPending(shownOf(leftover), [operationOf(mixed, { [leftover.id]: {} })], known);
+    expect(shown.buckets.get(leftover.id)).toMatchObject({ balanceMg: -60_000, state: 'empty', needsRecount: true });
+  });
+
+  test('is of the grade that was shown when it took from a tub', () => {
+    const leftover = tubRow({ composition: pure(blue), grade: 'returned', generation: 2 });
+    const displayed = { balanceMg: 500_000, grade: 'untouched' as const, generation: 0 };
+    const mixed = batchMixed([{ ...fromTub(leftover.id, 100_000), displayed } as Addition]);
+    const shown = foldPending(shownOf(leftover), [operationOf(mixed)], known);
+    const tub = shown.buckets.get(mixed.body.filled[0]?.bucketId as string);
+    expect(tub).toMatchObject({ grade: 'untouched', generation: 0 });
   });
 
   test('takes the worst grade and the earliest use-by of what went in', () => {

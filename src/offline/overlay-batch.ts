@@ -4,7 +4,9 @@ import type { Row } from '#contract/rows.ts';
 import { type Parent, inherit, keptOnTub } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import { type Milligrams, type PartsPerBillion, WHOLE } from '#domain/mass.ts';
-import { changeTub, correctedTime } from './overlay-bucket.ts';
+import { gradeWhenTaken, takenFromTub } from '#domain/tub-effects.ts';
+import { noTrace } from '#domain/tub-trace.ts';
+import { correctedTime, foldTub } from './overlay-bucket.ts';
 import type { OverlayFacts, Shown } from './overlay.ts';
 
 type BatchMixed = Extract<Operation, { type: 'batch-mixed' }>;
@@ -13,7 +15,8 @@ type BatchMixed = Extract<Operation, { type: 'batch-mixed' }>;
 export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: OverlayFacts): Shown {
   const { body } = operation;
   const buckets = new Map(shown.buckets);
-  for (const addition of body.additions) if (addition.kind === 'bucket') takeFrom(buckets, operation, addition);
+  for (const addition of body.additions)
+    if (addition.kind === 'bucket') takeFrom(buckets, shown.buckets, operation, addition);
   for (const tub of body.filled) buckets.set(tub.bucketId, newTub(shown, operation, tub, facts));
   const sum = (additions: readonly Addition[]) => additions.reduce((total, addition) => total + addition.actualMg, 0);
   const batches = new Map(shown.batches).set(body.batchId, {
@@ -34,18 +37,19 @@ export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: Overl
   return { buckets, batches };
 }
 
-/** A tub that was scraped empty holds nothing more: what the books still had is wall loss. */
+/** A batch may take from one tub twice: what it took `before` is no longer shown. */
 function takeFrom(
   buckets: Map<string, Row<'buckets'>>,
+  before: ReadonlyMap<string, Row<'buckets'>>,
   operation: BatchMixed,
   addition: Addition & { kind: 'bucket' },
 ): void {
-  const bucket = buckets.get(addition.bucketId);
+  const { bucketId, displayed } = addition;
+  const bucket = buckets.get(bucketId);
   if (bucket === undefined) return;
-  const change: Partial<Row<'buckets'>> = addition.empties
-    ? { balanceMg: 0, state: 'empty', locationId: null }
-    : { balanceMg: bucket.balanceMg - addition.actualMg };
-  buckets.set(bucket.id, changeTub(bucket, operation, change));
+  const taken = (before.get(bucketId)?.balanceMg ?? bucket.balanceMg) - bucket.balanceMg;
+  const shownMg = displayed === undefined ? bucket.balanceMg : displayed.balanceMg - taken;
+  buckets.set(bucketId, foldTub(bucket, operation, takenFromTub(addition, shownMg)));
 }
 
 function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: OverlayFacts): Row<'buckets'> {
@@ -72,6 +76,7 @@ function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: Overlay
     balanceMg: tub.massMg,
     needsRecount: false,
     seen: { [operation.installId]: operation.deviceSeq },
+    trace: noTrace(),
     composition: sharesOf(mixtureOf(body.additions, shown)),
     ...inherited,
     restrictions: [...inherited.restrictions],
@@ -134,5 +139,6 @@ function parentOf(addition: Addition, shown: Shown, facts: OverlayFacts): Parent
     };
   }
   const bucket = shown.buckets.get(addition.bucketId);
-  return bucket ?? { grade: 'unknown', useBy: null, cureC: null, restrictions: [], hazards: [], generation: 0 };
+  if (bucket !== undefined) return gradeWhenTaken(bucket, addition);
+  return { grade: 'unknown', useBy: null, cureC: null, restrictions: [], hazards: [], generation: 0 };
 }

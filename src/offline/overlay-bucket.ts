@@ -1,22 +1,10 @@
 import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
-import { needsRecount } from '#domain/needs-recount.ts';
+import { type TubEffect, changeTub } from '#domain/tub-trace.ts';
 
-/** One operation's change of a tub: an over-spend is flagged and never clipped, as the server does. */
-export function changeTub(
-  bucket: Row<'buckets'>,
-  operation: Operation,
-  change: Partial<Row<'buckets'>>,
-): Row<'buckets'> {
-  const { installId, deviceSeq } = operation;
-  const spend = { installId, seen: operation.seen[bucket.id] ?? {} };
-  const balanceMg = change.balanceMg ?? bucket.balanceMg;
-  return {
-    ...bucket,
-    needsRecount: bucket.needsRecount || needsRecount(balanceMg, bucket.seen, spend),
-    ...change,
-    seen: { ...bucket.seen, [installId]: Math.max(bucket.seen[installId] ?? 0, deviceSeq) },
-  };
+/** One operation's effect on a tub, as the server works it out. */
+export function foldTub(bucket: Row<'buckets'>, operation: Operation, effect: TubEffect): Row<'buckets'> {
+  return changeTub(bucket, { ...operation, seen: operation.seen[bucket.id] ?? {} }, effect);
 }
 
 /** The device's time by the clock of its last contact with the server. */

@@ -45,7 +45,8 @@ describe('a tub', () => {
 
   test('returned with nothing in it is empty', () => {
     const tub = tubRow({ balanceMg: 200_000 });
-    expect(after(tub, returned(tub.id))).toMatchObject({ state: 'empty', balanceMg: 0 });
+    const scraped = { grossMg: 68_000 as Milligrams, displayedMg: 200_000 };
+    expect(after(tub, returned(tub.id, scraped))).toMatchObject({ state: 'empty', balanceMg: 0 });
   });
 
   test('spent below nothing is flagged and not clipped', () => {

@@ -1,9 +1,10 @@
 import type { Operation } from '#contract/operation.ts';
 import type { Row } from '#contract/rows.ts';
+import { discardedTub, issuedTub, recountedTub, relocatedTub, returnedTub } from '#domain/tub-effects.ts';
+import { type TubEffect, withEntry } from '#domain/tub-trace.ts';
 import { adoptedTub } from './overlay-adopted.ts';
 import { foldBatchMixed } from './overlay-batch.ts';
-import { changeTub } from './overlay-bucket.ts';
-import { foldReturned } from './overlay-return.ts';
+import { foldTub } from './overlay-bucket.ts';
 
 export interface Shown {
   buckets: ReadonlyMap<string, Row<'buckets'>>;
@@ -29,25 +30,19 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
     case 'batch-released':
       return foldReleased(shown, operation);
     case 'bucket-issued':
-      return changeBucket(shown, operation, () => ({
-        state: 'at-press',
-        jobId: operation.body.jobId,
-        locationId: null,
-      }));
+      return changeBucket(shown, operation, issuedTub(operation.body));
     case 'bucket-returned':
-      return changeBucket(shown, operation, (bucket) => foldReturned(bucket, operation.body));
+      return changeBucket(shown, operation, returnedTub(operation.body));
     case 'bucket-relocated':
-      return changeBucket(shown, operation, () => ({ locationId: operation.body.locationId }));
+      return changeBucket(shown, operation, relocatedTub(operation.body));
     case 'bucket-recounted':
-      return changeBucket(shown, operation, (bucket) => ({
-        balanceMg: bucket.balanceMg + operation.body.deltaMg,
-        tareMg: operation.body.tareMg,
-        needsRecount: false,
-      }));
+      return changeBucket(shown, operation, recountedTub(operation.body));
+    case 'bucket-discarded':
+      return changeBucket(shown, operation, discardedTub(operation.body));
     case 'bucket-adopted':
       return { ...shown, buckets: new Map(shown.buckets).set(operation.body.bucketId, adoptedTub(operation)) };
-    case 'bucket-discarded':
-      return changeBucket(shown, operation, () => ({ balanceMg: 0, state: 'discarded', needsRecount: false }));
+    case 'shift-reported':
+      return shown;
   }
 }
 
@@ -62,7 +57,8 @@ function foldReleased(shown: Shown, operation: Operation & { type: 'batch-releas
   });
   const buckets = new Map(shown.buckets);
   for (const bucket of shown.buckets.values()) {
-    if (bucket.batchId === batch.id) buckets.set(bucket.id, { ...bucket, released: true });
+    if (bucket.batchId === batch.id)
+      buckets.set(bucket.id, { ...bucket, released: true, seen: withEntry(bucket.seen, operation) });
   }
   return { buckets, batches };
 }
@@ -70,13 +66,8 @@ function foldReleased(shown: Shown, operation: Operation & { type: 'batch-releas
 type OnOneBucket = Extract<Operation, { body: { bucketId: string } }>;
 
 /** A bucket that is not on this device stays unknown; the server knows it. */
-function changeBucket(
-  shown: Shown,
-  operation: OnOneBucket,
-  change: (bucket: Row<'buckets'>) => Partial<Row<'buckets'>>,
-): Shown {
+function changeBucket(shown: Shown, operation: OnOneBucket, effect: TubEffect): Shown {
   const bucket = shown.buckets.get(operation.body.bucketId);
   if (bucket === undefined) return shown;
-  const changed = changeTub(bucket, operation, change(bucket));
-  return { ...shown, buckets: new Map(shown.buckets).set(bucket.id, changed) };
+  return { ...shown, buckets: new Map(shown.buckets).set(bucket.id, foldTub(bucket, operation, effect)) };
 }

@@ -65,7 +65,7 @@ export function useFinish(weighing: Weighing, facts: WeighFacts): FinishEntry {
         plannedMg: weighing.plannedMg,
         jobId: weighing.jobId,
         rush: weighing.rush,
-        additions: weighing.additions,
+        additions: asDisplayed(weighing.additions, facts.buckets),
         release: light === null ? null : { light, byEye: true, at: new Date().toISOString() },
         filled: [filled],
       },
@@ -94,6 +94,16 @@ export function useFinish(weighing: Weighing, facts: WeighFacts): FinishEntry {
     setSaving(false);
     setProblem(error instanceof Error ? error.message : 'Not saved. Try again.');
   }
+}
+
+/** What each leftover was by this device's books: fixed with the batch, so that it stays the same batch. */
+function asDisplayed(additions: Weighing['additions'], buckets: WeighFacts['buckets']): Weighing['additions'] {
+  return additions.map((addition) => {
+    const tub = addition.kind === 'bucket' ? buckets.get(addition.bucketId) : undefined;
+    if (tub === undefined) return addition;
+    const { balanceMg, grade, generation } = tub;
+    return { ...addition, displayed: { balanceMg, grade, generation } };
+  });
 }
 
 /** A tare may be zero (the pot itself was tared); anything else reads like a mass. */

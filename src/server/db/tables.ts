@@ -99,6 +99,7 @@ export interface Buckets {
   shopId: string;
   state: string;
   tareMg: number;
+  trace: unknown | null;
   useBy: string | null;
 }
 
@@ -175,6 +176,10 @@ export interface FormulaRevisions {
   formulaId: string;
   hiding: number;
   lab: unknown | null;
+  name: string | null;
+  note: string | null;
+  opId: string | null;
+  proposedBy: string | null;
   revision: number;
   shopId: string;
   state: string;

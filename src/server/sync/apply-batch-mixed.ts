@@ -2,6 +2,7 @@ import type { Addition, Filled, OperationBody } from '#contract/operation-bodies
 import { inherit, keptOnTub } from '#domain/compatibility.ts';
 import { type Composition, blend } from '#domain/composition.ts';
 import type { Milligrams } from '#domain/mass.ts';
+import { takenFromTub } from '#domain/tub-effects.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
 import { drawLots } from './draw-lots.ts';
 import { insertBucket } from './insert-bucket.ts';
@@ -11,6 +12,7 @@ import { type Source, readSources } from './read-sources.ts';
 import { requireOwn } from './require-own.ts';
 
 type BatchMixed = Extract<OperationBody, { type: 'batch-mixed' }>['body'];
+type FromBucket = Addition & { kind: 'bucket' };
 
 /** A mixed batch: its additions, what it took from lots and buckets, and the labelled tubs that hold it now. */
 export function applyBatchMixed(context: ApplyContext, body: BatchMixed): void {
@@ -25,8 +27,7 @@ export function applyBatchMixed(context: ApplyContext, body: BatchMixed): void {
   insertAdditions(context, body);
   drawLots(context, body.additions);
   let n = 1;
-  for (const source of sources)
-    if (source.bucket !== undefined) n = takeFrom(context, source.bucket.id, source.addition, n);
+  for (const addition of body.additions) if (addition.kind === 'bucket') n = takeFrom(context, addition, n);
   const mixture = mixtureOf(sources);
   const inherited = keptOnTub(inherit(sources));
   for (const tub of body.filled) {
@@ -95,18 +96,20 @@ function insertAdditions({ draft, shopId }: ApplyContext, body: BatchMixed): voi
   draft.writes.additions.push(...rows);
 }
 
-/**
- * What the books still hold of a tub that was scraped empty stays on its wall. Read anew: a batch may take from one tub
- * twice.
- */
-function takeFrom(context: ApplyContext, bucketId: string, addition: Addition, n: number): number {
-  const bucket = requireBucket(context, bucketId);
-  const empties = addition.kind === 'bucket' && addition.empties;
-  const rest = bucket.balanceMg - addition.actualMg;
-  const movements = [{ kind: 'folded-in' as const, deltaMg: -addition.actualMg }];
-  if (!empties) return moveBucket(context, bucket, movements, {}, n);
-  const scraped = [...movements, ...(rest === 0 ? [] : [{ kind: 'wall-loss' as const, deltaMg: -rest }])];
-  return moveBucket(context, bucket, scraped, { state: 'empty', locationId: null }, n);
+/** A batch may take from one tub twice: what it took before is no longer shown. */
+function takeFrom(context: ApplyContext, addition: FromBucket, n: number): number {
+  const bucket = requireBucket(context, addition.bucketId);
+  const { actualMg, displayed } = addition;
+  const shownMg = displayed === undefined ? bucket.balanceMg : displayed.balanceMg - takenSoFar(context, bucket.id);
+  const effect = takenFromTub(addition, shownMg);
+  const restMg = -effect.deltaMg - actualMg;
+  const movements = [{ kind: 'folded-in' as const, deltaMg: -actualMg }];
+  if (restMg === 0) return moveBucket(context, bucket, effect, movements, n);
+  return moveBucket(context, bucket, effect, [...movements, { kind: 'wall-loss', deltaMg: -restMg }], n);
+}
+
+function takenSoFar({ draft }: ApplyContext, bucketId: string): number {
+  return -sum(draft.writes.movements.flatMap((movement) => (movement.bucketId === bucketId ? movement.deltaMg : [])));
 }
 
 /** Unknown as soon as one source is unknown. */

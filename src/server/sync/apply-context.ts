@@ -12,6 +12,11 @@ export interface ApplyContext {
   draft: PushDraft;
 }
 
+/** It cannot be taken yet: its station has seen something that has not arrived here. The station keeps it and sends it again. */
+export class NotYetError extends Error {
+  override name = 'NotYetError';
+}
+
 /** Why an operation is not accepted, in a sentence for the technician. */
 export class RejectedError extends Error {
   override name = 'RejectedError';

@@ -6,7 +6,7 @@ import type { Database } from '#server/db/connection.ts';
 import { type ShopTransaction, inShop } from '#server/db/in-shop.ts';
 import { isPassing } from '#server/db/passing-error.ts';
 import { log } from '#server/http/log.ts';
-import { RejectedError } from './apply-context.ts';
+import { NotYetError, RejectedError } from './apply-context.ts';
 import { applyOperation } from './apply-operation.ts';
 import { requireAuthorised } from './authorise.ts';
 import { canonicalJson } from './canonical-json.ts';
@@ -15,6 +15,7 @@ import { PushBook, PushDraft } from './push-book.ts';
 import { readFacts } from './push-facts.ts';
 import { referencesOf } from './push-references.ts';
 import { quarantine } from './quarantine.ts';
+import { bornWith } from './refused-tubs.ts';
 import { writePush } from './write-push.ts';
 
 export interface PushDeps {
@@ -113,7 +114,9 @@ async function takeTogether(
     try {
       return takeOne(book, station, entry, seq, deps);
     } catch (error) {
+      if (error instanceof NotYetError) return { opId: entry.opId, outcome: 'retry' };
       const problem = problemOf(error, entry);
+      if ('operation' in entry.parsed) for (const id of bornWith(entry.parsed.operation)) book.refused.add(id);
       refused.push({ entry, problem });
       return { opId: entry.opId, outcome: 'rejected', problem };
     }

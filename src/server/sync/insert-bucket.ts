@@ -1,5 +1,6 @@
 import type { Grade } from '#domain/compatibility.ts';
 import type { Composition } from '#domain/composition.ts';
+import { noTrace } from '#domain/tub-trace.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
 
 export interface NewBucket {
@@ -50,6 +51,7 @@ export function insertBucket(context: ApplyContext, tub: NewBucket, n: number): 
     reservedFor: null,
     deletedAt: null,
     seen: { [operation.installId]: operation.deviceSeq },
+    trace: noTrace(),
     restrictions: [...restrictions],
     hazards: [...hazards],
     changeSeq: seq,

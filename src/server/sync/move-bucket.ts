@@ -1,12 +1,23 @@
-import { needsRecount } from '#domain/needs-recount.ts';
-import { type ApplyContext, RejectedError } from './apply-context.ts';
+import { type TubEffect, type TubFields, changeTub } from '#domain/tub-trace.ts';
+import { type ApplyContext, NotYetError, RejectedError } from './apply-context.ts';
 import type { BucketRow } from './push-facts.ts';
 
-/** @throws RejectedError when the shop has no such tub */
-export function requireBucket({ draft }: ApplyContext, id: string): BucketRow {
+/** A tub whose row is read as the domain reads it. */
+export type TubRow = BucketRow & TubFields;
+
+/**
+ * @throws RejectedError when the shop has no such tub, or refused the entry that filled it
+ * @throws NotYetError when the station has seen it: what filled it is still to come
+ */
+export function requireBucket({ draft, operation }: ApplyContext, id: string): TubRow {
   const row = draft.findTub(id);
-  if (row === undefined) throw new RejectedError('no-such-tub', 'There is no such tub in this shop.');
-  return row;
+  if (row !== undefined) return row as TubRow;
+  if (draft.isRefused(id)) {
+    const detail = 'The entry that filled this tub was not accepted. Settle that one, then send this one again.';
+    throw new RejectedError('tub-refused', detail);
+  }
+  if (Object.keys(operation.seen[id] ?? {}).length > 0) throw new NotYetError();
+  throw new RejectedError('no-such-tub', 'There is no such tub in this shop.');
 }
 
 type MovementKind = 'filled' | 'folded-in' | 'wall-loss' | 'used' | 'recounted' | 'discarded';
@@ -18,18 +29,17 @@ interface Movement {
 }
 
 /**
- * Books movements of one bucket and changes its row: the balance stays the sum of its movements, an over-spend is
- * flagged and never clipped. @returns the number of the next movement of this operation
+ * Books the movements of which an effect on a bucket consists and changes its row: the balance stays the sum of its
+ * movements. @returns the number of the next movement of this operation
  */
 export function moveBucket(
   context: ApplyContext,
-  bucket: BucketRow,
+  bucket: TubRow,
+  effect: TubEffect,
   movements: readonly Movement[],
-  change: Partial<BucketRow>,
   firstN = 1,
 ): number {
   const { shopId, operation, seq, draft } = context;
-  const balanceMg = movements.reduce((sum, movement) => sum + movement.deltaMg, bucket.balanceMg);
   draft.writes.movements.push(
     ...movements.map((movement, index) => ({
       shopId,
@@ -41,16 +51,7 @@ export function moveBucket(
       jobId: movement.jobId ?? null,
     })),
   );
-  const known = bucket.seen as Record<string, number>;
-  const spend = { installId: operation.installId, seen: operation.seen[bucket.id] ?? {} };
-  const seen = { ...known, [operation.installId]: Math.max(known[operation.installId] ?? 0, operation.deviceSeq) };
-  draft.tubs.set(bucket.id, {
-    ...bucket,
-    needsRecount: bucket.needsRecount || needsRecount(balanceMg, known, spend),
-    ...change,
-    balanceMg,
-    seen,
-    changeSeq: seq,
-  });
+  const entry = { ...operation, seen: operation.seen[bucket.id] ?? {} };
+  draft.tubs.set(bucket.id, { ...changeTub(bucket, entry, effect), changeSeq: seq });
   return firstN + movements.length;
 }

@@ -75,7 +75,7 @@ export const pullTables: Readonly<Record<TableName, { table: string; row: RawBui
       'batchId', t.batch_id, 'familyId', t.family_id, 'containerId', t.container_id, 'tareMg', t.tare_mg,
       'filledMg', t.filled_mg, 'filledAt', t.filled_at, 'filledBy', t.filled_by, 'locationId', t.location_id,
       'state', t.state, 'grade', t.grade, 'released', t.released, 'balanceMg', t.balance_mg,
-      'needsRecount', t.needs_recount, 'seen', t.seen, 'useBy', t.use_by, 'cureC', t.cure_c,
+      'needsRecount', t.needs_recount, 'seen', t.seen, 'trace', t.trace, 'useBy', t.use_by, 'cureC', t.cure_c,
       'restrictions', t.restrictions, 'hazards', t.hazards, 'generation', t.generation)
       || jsonb_build_object('reservedFor', t.reserved_for, 'jobId', t.job_id, 'lab', t.lab, 'hiding', t.hiding,
         'composition', (

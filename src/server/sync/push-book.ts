@@ -1,6 +1,7 @@
 import type { Insertable } from 'kysely';
 import type { Composition } from '#domain/composition.ts';
 import type * as Tables from '#server/db/tables.ts';
+import type { NewJob } from '#server/jobs/queue-jobs.ts';
 import type { BucketRow, PushFacts } from './push-facts.ts';
 
 /** Rows that a push adds, and what it changes of others. */
@@ -13,6 +14,8 @@ export interface PushWrites {
   movements: Insertable<Tables.Movements>[];
   lotMovements: Insertable<Tables.LotMovements>[];
   releases: { batchId: string; light: string; releasedBy: string }[];
+  /** Work that becomes due when the push commits. */
+  jobs: NewJob[];
 }
 
 export function noWrites(): PushWrites {
@@ -25,6 +28,7 @@ export function noWrites(): PushWrites {
     movements: [],
     lotMovements: [],
     releases: [],
+    jobs: [],
   };
 }
 
@@ -63,6 +67,11 @@ export class PushDraft {
     );
   }
 
+  /** True when the entry with which this tub or batch would have begun was refused. */
+  isRefused(id: string): boolean {
+    return this.facts.refused.has(id) || this.book.refused.has(id);
+  }
+
   isCodeGiven(code: string): boolean {
     if (this.facts.codes.has(code)) return true;
     return [...this.book.tubs.values(), ...this.tubs.values()].some((tub) => tub.code === code);
@@ -77,6 +86,8 @@ export class PushBook {
   readonly tubs = new Map<string, BucketRow>();
   readonly compositions = new Map<string, Composition>();
   readonly newTubs = new Set<string>();
+  /** Tubs and batches that would have begun with a refused entry of this push. */
+  readonly refused = new Set<string>();
 
   constructor(facts: PushFacts) {
     this.facts = facts;

@@ -4,6 +4,7 @@ import type { PartsPerBillion } from '#domain/mass.ts';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
 import type { Buckets, Components } from '#server/db/tables.ts';
 import type { PushReferences } from './push-references.ts';
+import { findRefused } from './refused-tubs.ts';
 
 export type BucketRow = Selectable<Buckets>;
 
@@ -34,6 +35,8 @@ export interface PushFacts {
   buckets: ReadonlyMap<string, BucketRow>;
   compositions: ReadonlyMap<string, Composition>;
   codes: ReadonlySet<string>;
+  /** Tubs and batches that are named, do not exist, and would have begun with an entry in quarantine. */
+  refused: ReadonlySet<string>;
 }
 
 export const revisionKey = (formulaId: string, revision: number) => `${formulaId}/${revision}`;
@@ -67,6 +70,10 @@ export async function readFacts(
   const components = await readComponents(trx, shopId, named);
   const lots = await readLots(trx, shopId, named);
   const buckets = await readBuckets(trx, shopId, named);
+  const batches = await readIds(trx, shopId, 'batches', named.batches);
+  const missing = [...named.buckets, ...named.batches].filter(
+    (id) => !buckets.has(id) && !batches.has(id) && !named.born.has(id),
+  );
   return {
     operations: new Map(operations.map(({ opId, ...rest }) => [opId, rest])),
     installs: new Set(installs.map(({ id }) => id)),
@@ -79,10 +86,11 @@ export async function readFacts(
     components,
     lots,
     revisions: await readRevisions(trx, shopId, named),
-    batches: await readIds(trx, shopId, 'batches', named.batches),
+    batches,
     buckets,
     compositions: await readCompositions(trx, shopId, named),
     codes: await readCodes(trx, shopId, named),
+    refused: await findRefused(trx, shopId, missing),
   };
 }
 

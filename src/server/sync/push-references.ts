@@ -1,4 +1,5 @@
 import type { Operation } from '#contract/operation.ts';
+import { bornWith } from './refused-tubs.ts';
 
 /** Ids that a push names, by what they are: read at once before the effects of its operations are worked out. */
 export interface PushReferences {
@@ -18,6 +19,8 @@ export interface PushReferences {
   locations: ReadonlySet<string>;
   families: ReadonlySet<string>;
   jobs: ReadonlySet<string>;
+  /** Tubs and batches that begin with an entry of this push. */
+  born: ReadonlySet<string>;
 }
 
 type Collected = { [K in keyof PushReferences]: Set<string> };
@@ -39,12 +42,14 @@ export function referencesOf(operations: readonly Operation[]): PushReferences {
     locations: new Set(),
     families: new Set(),
     jobs: new Set(),
+    born: new Set(),
   };
   for (const operation of operations) {
     found.operations.add(operation.opId);
     found.installs.add(operation.installId);
     found.grants.add(operation.grantId);
     found.people.add(operation.actorId);
+    for (const id of bornWith(operation)) found.born.add(id);
     addBody(found, operation);
   }
   return found;

@@ -1,16 +1,16 @@
 import type { Addition } from '#contract/operation-bodies.ts';
-import type { Grade, Parent } from '#domain/compatibility.ts';
+import type { Parent } from '#domain/compatibility.ts';
 import type { Composition } from '#domain/composition.ts';
 import { WHOLE } from '#domain/mass.ts';
+import { gradeWhenTaken } from '#domain/tub-effects.ts';
 import { type ApplyContext, RejectedError } from './apply-context.ts';
-import { requireBucket } from './move-bucket.ts';
-import type { BucketRow } from './push-facts.ts';
+import { type TubRow, requireBucket } from './move-bucket.ts';
 
 /** One addition with what it brings into the mix; an empty composition is unknown. */
 export interface Source extends Parent {
   addition: Addition;
   composition: Composition;
-  bucket?: BucketRow;
+  bucket?: TubRow;
 }
 
 /** Reads what each addition was, before anything of this operation changes it. @throws RejectedError */
@@ -31,13 +31,14 @@ function readComponent({ draft }: ApplyContext, addition: Addition & { kind: 'co
 
 function readBucket(context: ApplyContext, addition: Addition & { kind: 'bucket' }): Source {
   const bucket = requireBucket(context, addition.bucketId);
-  const { useBy, cureC, restrictions, hazards, generation } = bucket;
+  const { grade, generation } = gradeWhenTaken(bucket, addition);
+  const { useBy, cureC, restrictions, hazards } = bucket;
   const composition = context.draft.compositionOf(bucket.id);
   return {
     addition,
     bucket,
     composition,
-    grade: bucket.grade as Grade,
+    grade,
     useBy,
     cureC,
     restrictions,

@@ -1,6 +1,7 @@
 import { sql } from 'kysely';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
 import type { DB } from '#server/db/tables.ts';
+import { queueJobs } from '#server/jobs/queue-jobs.ts';
 import type { PushBook, PushWrites } from './push-book.ts';
 import type { BucketRow } from './push-facts.ts';
 
@@ -27,6 +28,7 @@ export async function writePush(trx: ShopTransaction, shopId: string, seq: numbe
   await insertAll(trx, 'movements', writes.movements);
   await insertAll(trx, 'lotMovements', writes.lotMovements);
   await drawFromLots(trx, shopId, seq, writes);
+  await queueJobs(trx, writes.jobs);
 }
 
 async function insertAll(trx: ShopTransaction, table: keyof DB, rows: readonly object[]): Promise<void> {
@@ -41,8 +43,9 @@ async function insertAll(trx: ShopTransaction, table: keyof DB, rows: readonly o
 }
 
 /** A JSON column takes text: the driver would send an array as a PostgreSQL array. */
-function asInserted({ lab, seen, ...row }: BucketRow) {
-  return { ...row, lab: lab === null ? null : JSON.stringify(lab), seen: JSON.stringify(seen) };
+function asInserted({ lab, seen, trace, ...row }: BucketRow) {
+  const json = { seen: JSON.stringify(seen), trace: JSON.stringify(trace) };
+  return { ...row, ...json, lab: lab === null ? null : JSON.stringify(lab) };
 }
 
 /** The last number of each install that has arrived: gaps are found by it, nothing is gated. */
@@ -82,16 +85,17 @@ async function changeTubs(trx: ShopTransaction, shopId: string, tubs: readonly B
     released: tub.released,
     needs_recount: tub.needsRecount,
     seen: tub.seen,
+    trace: tub.trace,
     generation: tub.generation,
     job_id: tub.jobId,
     change_seq: tub.changeSeq,
   }));
   await sql`
     update buckets b set tare_mg = x.tare_mg, balance_mg = x.balance_mg, location_id = x.location_id, state = x.state,
-      grade = x.grade, released = x.released, needs_recount = x.needs_recount, seen = x.seen,
+      grade = x.grade, released = x.released, needs_recount = x.needs_recount, seen = x.seen, trace = x.trace,
       generation = x.generation, job_id = x.job_id, change_seq = x.change_seq
     from jsonb_to_recordset(${JSON.stringify(changed)}::jsonb) as x(id uuid, tare_mg bigint, balance_mg bigint,
-      location_id uuid, state text, grade text, released boolean, needs_recount boolean, seen jsonb, generation int,
+      location_id uuid, state text, grade text, released boolean, needs_recount boolean, seen jsonb, trace jsonb, generation int,
       job_id uuid, change_seq bigint)
     where b.shop_id = ${shopId} and b.id = x.id`.execute(trx);
 }
