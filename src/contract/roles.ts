@@ -17,6 +17,7 @@ export const operationRoles: Readonly<Record<OperationType, readonly Role[]>> = 
   'bucket-recounted': press,
   'bucket-discarded': ink,
   'bucket-adopted': ink,
+  'shift-reported': ink,
 };
 
 /** True when `person` may record an operation of this type. */

@@ -5,8 +5,8 @@ export function touchedBuckets(operation: OperationBody): string[] {
   if (operation.type === 'batch-mixed') {
     return operation.body.additions.flatMap((addition) => (addition.kind === 'bucket' ? [addition.bucketId] : []));
   }
-  if (operation.type === 'batch-released' || operation.type === 'bucket-adopted') return [];
-  return [operation.body.bucketId];
+  if (operation.type === 'bucket-adopted') return [];
+  return 'bucketId' in operation.body ? [operation.body.bucketId] : [];
 }
 
 /** The buckets that begin with an operation. */

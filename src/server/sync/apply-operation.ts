@@ -9,6 +9,7 @@ import {
   applyRelocated,
   applyReturned,
 } from './apply-bucket.ts';
+import { applyShiftReported } from './apply-shift-reported.ts';
 
 /** The effect of one operation on batches, buckets and movements. */
 export function applyOperation(context: ApplyContext): void {
@@ -30,5 +31,7 @@ export function applyOperation(context: ApplyContext): void {
       return applyDiscarded(context, operation.body);
     case 'bucket-adopted':
       return adoptBucket(context, operation.body);
+    case 'shift-reported':
+      return applyShiftReported(context, operation.body);
   }
 }
