@@ -96,7 +96,20 @@ test('an entry to be retried waits, the others behind it are sent, and the run e
   expect((await pushOutbox(station, server.deps)).kind).toBe('held');
   const { waiting } = await readQueue(station);
   expect(waiting.map(({ opId }) => opId)).toEqual([first]);
-  expect(server.calls.length).toBe(3);
+  expect(server.calls.length).toBe(2);
+});
+
+test('however many are to be retried, those behind them are sent', async () => {
+  const station = await stationWith(70);
+  const last = (await readQueue(station)).waiting.slice(-5).map(({ opId }) => opId);
+  const server = answering({
+    [PUSH]: (call) =>
+      pushAnswer(call, (opId) => (last.includes(opId) ? accepted(4)(opId) : { opId, outcome: 'retry' })),
+  });
+  expect((await pushOutbox(station, server.deps)).kind).toBe('held');
+  const { waiting, sentToday } = await readQueue(station, server.deps.now());
+  expect(waiting).toHaveLength(65);
+  expect(sentToday.map(({ opId }) => opId)).toEqual(last);
 });
 
 describe('settles nothing', () => {

@@ -12,16 +12,25 @@ import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
 
 /** Sends what waits, in the order of recording, until nothing waits, an exchange fails or the server settles nothing. */
 export async function pushOutbox(station: Station, deps: SyncDeps): Promise<SyncResult> {
+  // What the server cannot take yet waits for the next run, and holds up nothing behind it.
+  const later = new Set<string>();
   for (;;) {
-    const batch = await nextBatch(station.outbox);
-    if (batch.length === 0) return { kind: 'done' };
-    const result = await pushBatch(station, batch, deps);
+    const batch = await nextBatch(station.outbox, later);
+    if (batch.length === 0) return later.size === 0 ? { kind: 'done' } : LATER;
+    const result = await pushBatch(station, batch, deps, later);
     if (result.kind !== 'done') return result;
   }
 }
 
+const LATER: SyncResult = { kind: 'held', problem: 'The server takes these logs later.' };
+
 /** One push settles only what the server names: a portal's page or a cut answer settles nothing. */
-async function pushBatch(station: Station, batch: readonly QueuedOperation[], deps: SyncDeps): Promise<SyncResult> {
+async function pushBatch(
+  station: Station,
+  batch: readonly QueuedOperation[],
+  deps: SyncDeps,
+  later: Set<string>,
+): Promise<SyncResult> {
   const requestId = deps.randomId();
   const sentAt = deps.now();
   const response = await deps
@@ -40,11 +49,15 @@ async function pushBatch(station: Station, batch: readonly QueuedOperation[], de
   }
   await measureClock(station.outbox, answer.data.serverTime, sentAt, deps.now());
   const settled = await settle(station.outbox, batch, answer.data.results, deps.now());
-  return settled > 0 ? { kind: 'done' } : { kind: 'held', problem: 'The server takes these logs later.' };
+  const known = later.size;
+  const sent = new Set(batch.map(({ opId }) => opId));
+  for (const { opId, outcome } of answer.data.results) if (outcome === 'retry' && sent.has(opId)) later.add(opId);
+  return settled > 0 || later.size > known ? { kind: 'done' } : LATER;
 }
 
-async function nextBatch(outbox: Outbox): Promise<QueuedOperation[]> {
-  const waiting = await outbox.ops.where('status').equals('waiting').sortBy('deviceSeq');
+async function nextBatch(outbox: Outbox, later: ReadonlySet<string>): Promise<QueuedOperation[]> {
+  const all = await outbox.ops.where('status').equals('waiting').sortBy('deviceSeq');
+  const waiting = all.filter(({ opId }) => !later.has(opId));
   const batch: QueuedOperation[] = [];
   let bytes = 200;
   for (const entry of waiting.slice(0, LARGEST_PUSH_OPERATIONS)) {
