@@ -1,4 +1,5 @@
 import { randomBytes } from 'node:crypto';
+import { sql } from 'kysely';
 import type { Role } from '#contract/roles.ts';
 import { codePrefix } from '#domain/bucket-code.ts';
 import { hashPassword } from '#server/auth/passwords.ts';
@@ -37,6 +38,8 @@ export async function seedDemo({ ownerUrl, appUrl, today }: Deps): Promise<void>
   try {
     await seedFirst(owner, app, today);
     await seedSecond(owner, app, today);
+    // As after any bulk load: plans that are made before there are statistics may take the wrong key.
+    await sql`analyze`.execute(owner);
   } finally {
     await owner.destroy();
     await app.destroy();

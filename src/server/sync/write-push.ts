@@ -1,45 +1,31 @@
 import { sql } from 'kysely';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
-import type { DB } from '#server/db/tables.ts';
 import { queueJobs } from '#server/jobs/queue-jobs.ts';
+import { insertRows } from './insert-rows.ts';
 import type { PushBook, PushWrites } from './push-book.ts';
 import type { BucketRow } from './push-facts.ts';
-
-/** PostgreSQL takes 65,535 parameters a statement. */
-const MOST_PARAMETERS = 60_000;
 
 /** Writes all that a push's operations did, in the order that foreign keys ask for, one statement a table. */
 export async function writePush(trx: ShopTransaction, shopId: string, seq: number, book: PushBook): Promise<void> {
   const { writes } = book;
-  await insertAll(trx, 'operations', writes.operations);
+  await insertRows(trx, 'operations', writes.operations);
   await countInstalls(trx, shopId, writes);
-  await insertAll(trx, 'batches', writes.batches);
+  await insertRows(trx, 'batches', writes.batches);
   await releaseBatches(trx, shopId, seq, writes);
   const tubs = [...book.tubs.values()];
-  await insertAll(trx, 'buckets', tubs.filter(({ id }) => book.newTubs.has(id)).map(asInserted));
+  await insertRows(trx, 'buckets', tubs.filter(({ id }) => book.newTubs.has(id)).map(asInserted));
   await changeTubs(
     trx,
     shopId,
     tubs.filter(({ id }) => !book.newTubs.has(id)),
   );
-  await insertAll(trx, 'additions', writes.additions);
-  await insertAll(trx, 'bucketComposition', writes.bucketComposition);
-  await insertAll(trx, 'bucketParents', writes.bucketParents);
-  await insertAll(trx, 'movements', writes.movements);
-  await insertAll(trx, 'lotMovements', writes.lotMovements);
+  await insertRows(trx, 'additions', writes.additions);
+  await insertRows(trx, 'bucketComposition', writes.bucketComposition);
+  await insertRows(trx, 'bucketParents', writes.bucketParents);
+  await insertRows(trx, 'movements', writes.movements);
+  await insertRows(trx, 'lotMovements', writes.lotMovements);
   await drawFromLots(trx, shopId, seq, writes);
   await queueJobs(trx, writes.jobs);
-}
-
-async function insertAll(trx: ShopTransaction, table: keyof DB, rows: readonly object[]): Promise<void> {
-  if (rows.length === 0) return;
-  const size = Math.max(1, Math.floor(MOST_PARAMETERS / Object.keys(rows[0] ?? {}).length));
-  for (let at = 0; at < rows.length; at += size) {
-    await trx
-      .insertInto(table)
-      .values(rows.slice(at, at + size) as never)
-      .execute();
-  }
 }
 
 /** A JSON column takes text: the driver would send an array as a PostgreSQL array. */
