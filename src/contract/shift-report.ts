@@ -16,7 +16,7 @@ export const shiftReported = z.strictObject({
   discards: count,
   discardedMg: totalMilligrams,
   openPoints: z.strictObject({
-    /** Logs not sent, this one not counted. */
+    /** Logs not sent, summaries not counted. */
     waiting: count,
     refused: count,
     recounts: count,

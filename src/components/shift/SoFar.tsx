@@ -1,6 +1,7 @@
 import { useLiveQuery } from 'dexie-react-hooks';
 import { useStation } from '#components/ui/station-context.ts';
 import { readBatches } from '#offline/shown.ts';
+import { formatKilograms } from './format-kilograms.ts';
 
 /** Today's kilograms of this shop as this device knows them. */
 export function SoFar() {
@@ -10,11 +11,11 @@ export function SoFar() {
   const today = new Date().toDateString();
   const mixed = batches.filter((batch) => new Date(batch.mixedAt).toDateString() === today);
   const sum = (of: (batch: (typeof mixed)[number]) => number) => mixed.reduce((total, batch) => total + of(batch), 0);
-  const kilograms = new Intl.NumberFormat(station.shop.locale, { minimumFractionDigits: 2, maximumFractionDigits: 2 });
+  const kilograms = (mg: number) => formatKilograms(mg, station.shop.locale);
   const rows = [
     ['Batches', String(mixed.length), ''],
-    ['Mixed', kilograms.format(sum((batch) => batch.actualMg) / 1e6), 'kg'],
-    ['Leftovers used up', kilograms.format(sum((batch) => batch.reusedMg) / 1e6), 'kg'],
+    ['Mixed', kilograms(sum((batch) => batch.actualMg)), 'kg'],
+    ['Leftovers used up', kilograms(sum((batch) => batch.reusedMg)), 'kg'],
   ] as const;
   return (
     <section className="stack">
@@ -29,6 +30,9 @@ export function SoFar() {
           </div>
         ))}
       </dl>
+      <a className="key wide" href="/shift/summary">
+        <span className="g g-on">Shift summary</span>
+      </a>
     </section>
   );
 }
