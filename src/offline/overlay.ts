@@ -49,12 +49,11 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
 function foldReleased(shown: Shown, operation: Operation & { type: 'batch-released' }): Shown {
   const batch = shown.batches.get(operation.body.batchId);
   if (batch === undefined) return shown;
-  const batches = new Map(shown.batches).set(batch.id, {
-    ...batch,
-    state: 'released',
-    light: operation.body.release.light,
-    releasedBy: operation.actorId,
-  });
+  const { light } = operation.body.release;
+  // Of several releases the same one stays on every device and on the server.
+  const stays = batch.state === 'released' && `${batch.releasedBy} ${batch.light}` >= `${operation.actorId} ${light}`;
+  const released = { ...batch, state: 'released', light, releasedBy: operation.actorId } as const;
+  const batches = new Map(shown.batches).set(batch.id, stays ? batch : released);
   const buckets = new Map(shown.buckets);
   for (const bucket of shown.buckets.values()) {
     if (bucket.batchId === batch.id)

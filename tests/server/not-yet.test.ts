@@ -90,6 +90,28 @@ test('a release that comes before its batch is sent again, and so is the issue b
   expect((await push([release, issued])).map(({ outcome }) => outcome)).toEqual(['accepted', 'accepted']);
 });
 
+test.each(['in the same push', 'in an earlier push'])(
+  'a release that was refused %s does not come: the issue is refused',
+  async (when) => {
+    const body = await aBatch();
+    body.body.release = null;
+    const filling = record(body, 'mixer');
+    await push([filling]);
+    const release = record(
+      {
+        type: 'batch-released',
+        body: { batchId: body.body.batchId, release: { light: 'D65', byEye: true, at: new Date().toISOString() } },
+      },
+      'operator',
+    );
+    const issued = seenBy(tubOf(body), { [filling.installId]: filling.deviceSeq });
+    expect(await push([issued])).toMatchObject([{ outcome: 'retry' }]);
+    if (when === 'in an earlier push') await push([release]);
+    const results = await push(when === 'in the same push' ? [release, issued] : [issued]);
+    expect(results.at(-1)).toMatchObject({ outcome: 'rejected', problem: { code: 'not-released' } });
+  },
+);
+
 test('a scraped tub loses what was shown of it: what another station used meanwhile is flagged, and movements add up', async () => {
   const source = await aBatch();
   const bucketId = tubOf(source);

@@ -1,9 +1,9 @@
 import type { OperationBody } from '#contract/operation-bodies.ts';
-import { covers } from '#domain/seen.ts';
 import { discardedTub, issuedTub, recountedTub, relocatedTub, returnedTub } from '#domain/tub-effects.ts';
 import { type TubFields, withEntry } from '#domain/tub-trace.ts';
 import { type ApplyContext, NotYetError, RejectedError } from './apply-context.ts';
-import { moveBucket, requireBucket } from './move-bucket.ts';
+import { type TubRow, moveBucket, requireBucket } from './move-bucket.ts';
+import { releaseOf } from './refused-tubs.ts';
 import { requireOwn } from './require-own.ts';
 
 type BodyOf<T extends OperationBody['type']> = Extract<OperationBody, { type: T }>['body'];
@@ -26,17 +26,15 @@ export function applyBatchReleased(context: ApplyContext, body: BodyOf<'batch-re
 export function applyIssued(context: ApplyContext, body: BodyOf<'bucket-issued'>): void {
   const bucket = requireBucket(context, body.bucketId);
   requireOwn(context, 'jobs', body.jobId);
-  if (!bucket.released && body.overrideReason === null) {
-    requireNothingToCome(context, bucket);
-    throw new RejectedError('not-released', 'This ink is not released. Name a reason to issue it.');
-  }
+  if (!bucket.released && body.overrideReason === null) throw releaseToCome(context, bucket);
   moveBucket(context, bucket, issuedTub(body), []);
 }
 
-/** What others did and this station saw may be the release. @throws NotYetError when some of it has not arrived */
-function requireNothingToCome({ operation }: ApplyContext, bucket: { id: string } & Pick<TubFields, 'seen'>): void {
-  const { [operation.installId]: _, ...ofOthers } = operation.seen[bucket.id] ?? {};
-  if (!covers(bucket.seen, ofOthers)) throw new NotYetError();
+/** Without a reason a station issues only what it shows as released: that release is still to come, unless it was refused. */
+function releaseToCome({ draft, operation }: ApplyContext, { id, batchId }: TubRow): Error {
+  const knew = Object.keys(operation.seen[id] ?? {}).length > 0;
+  if (knew && batchId !== null && !draft.isRefused(releaseOf(batchId))) return new NotYetError();
+  return new RejectedError('not-released', 'This ink is not released. Name a reason to issue it.');
 }
 
 export function applyReturned(context: ApplyContext, body: BodyOf<'bucket-returned'>): void {

@@ -67,7 +67,7 @@ export class PushDraft {
     );
   }
 
-  /** True when the entry with which this tub or batch would have begun was refused. */
+  /** True when the entry with which this would have begun was refused; tubs, batches and releases as `bornWith` names them. */
   isRefused(id: string): boolean {
     return this.facts.refused.has(id) || this.book.refused.has(id);
   }
@@ -86,7 +86,7 @@ export class PushBook {
   readonly tubs = new Map<string, BucketRow>();
   readonly compositions = new Map<string, Composition>();
   readonly newTubs = new Set<string>();
-  /** Tubs and batches that would have begun with a refused entry of this push. */
+  /** What would have begun with a refused entry of this push. */
   readonly refused = new Set<string>();
 
   constructor(facts: PushFacts) {

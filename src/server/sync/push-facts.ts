@@ -4,7 +4,7 @@ import type { PartsPerBillion } from '#domain/mass.ts';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
 import type { Buckets, Components } from '#server/db/tables.ts';
 import type { PushReferences } from './push-references.ts';
-import { findRefused } from './refused-tubs.ts';
+import { findRefused, releaseOf } from './refused-tubs.ts';
 
 export type BucketRow = Selectable<Buckets>;
 
@@ -35,7 +35,7 @@ export interface PushFacts {
   buckets: ReadonlyMap<string, BucketRow>;
   compositions: ReadonlyMap<string, Composition>;
   codes: ReadonlySet<string>;
-  /** Tubs and batches that are named, do not exist, and would have begun with an entry in quarantine. */
+  /** What is named, does not exist, and would have begun with an entry in quarantine, as `bornWith` names it. */
   refused: ReadonlySet<string>;
 }
 
@@ -74,6 +74,9 @@ export async function readFacts(
   const missing = [...named.buckets, ...named.batches].filter(
     (id) => !buckets.has(id) && !batches.has(id) && !named.born.has(id),
   );
+  const unreleased = [...buckets.values()].flatMap(({ id, released, batchId }) =>
+    !released && batchId !== null && named.issuedAsReleased.has(id) ? [releaseOf(batchId)] : [],
+  );
   return {
     operations: new Map(operations.map(({ opId, ...rest }) => [opId, rest])),
     installs: new Set(installs.map(({ id }) => id)),
@@ -90,7 +93,7 @@ export async function readFacts(
     buckets,
     compositions: await readCompositions(trx, shopId, named),
     codes: await readCodes(trx, shopId, named),
-    refused: await findRefused(trx, shopId, missing),
+    refused: await findRefused(trx, shopId, [...missing, ...unreleased]),
   };
 }
 

@@ -21,6 +21,8 @@ export interface PushReferences {
   jobs: ReadonlySet<string>;
   /** Tubs and batches that begin with an entry of this push. */
   born: ReadonlySet<string>;
+  /** Tubs that are issued without a reason, as released ink is. */
+  issuedAsReleased: ReadonlySet<string>;
 }
 
 type Collected = { [K in keyof PushReferences]: Set<string> };
@@ -43,6 +45,7 @@ export function referencesOf(operations: readonly Operation[]): PushReferences {
     families: new Set(),
     jobs: new Set(),
     born: new Set(),
+    issuedAsReleased: new Set(),
   };
   for (const operation of operations) {
     found.operations.add(operation.opId);
@@ -58,6 +61,7 @@ export function referencesOf(operations: readonly Operation[]): PushReferences {
 function addBody(found: Collected, { type, body }: Operation): void {
   const add = (kind: keyof Collected, id: string | null) => id !== null && found[kind].add(id);
   if ('bucketId' in body) add('buckets', body.bucketId);
+  if (type === 'bucket-issued' && body.overrideReason === null) add('issuedAsReleased', body.bucketId);
   if ('jobId' in body) add('jobs', body.jobId);
   if ('locationId' in body) add('locations', body.locationId);
   if ('batchId' in body) add('batches', body.batchId);

@@ -1,4 +1,4 @@
-import { sql } from 'kysely';
+import { type SqlBool, sql } from 'kysely';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
 import { queueJobs } from '#server/jobs/queue-jobs.ts';
 import { insertRows } from './insert-rows.ts';
@@ -48,6 +48,7 @@ async function countInstalls(trx: ShopTransaction, shopId: string, { operations 
   }
 }
 
+/** Of several releases of one batch the same one stays, whichever came first. */
 async function releaseBatches(trx: ShopTransaction, shopId: string, seq: number, writes: PushWrites): Promise<void> {
   for (const { batchId, light, releasedBy } of writes.releases) {
     await trx
@@ -55,6 +56,9 @@ async function releaseBatches(trx: ShopTransaction, shopId: string, seq: number,
       .set({ state: 'released', light, releasedBy, changeSeq: seq })
       .where('shopId', '=', shopId)
       .where('id', '=', batchId)
+      .where(
+        sql<SqlBool>`(state = 'mixed' or (released_by::text collate "C", light collate "C") < (${releasedBy}, ${light}))`,
+      )
       .execute();
   }
 }
