@@ -26,6 +26,7 @@ export async function pullChanges(
   const progress: LoadProgress = { done: 0, total: null, bytes: 0 };
   let startedOver = false;
   let pages: PullResponse[] = [];
+  let from = '';
   for (;;) {
     const position = await station.cache.meta.get('position');
     const first = (position?.completeAt ?? null) === null;
@@ -38,10 +39,11 @@ export async function pullChanges(
       pages = [];
       continue;
     }
+    if (pages.length === 0) from = position?.cursor ?? '';
     pages.push(page.answer);
     if (first || !page.answer.more) {
       await settleOwn(station, pages, deps.now());
-      await writePages(station.cache, pages, position?.completeAt ?? null, deps.now());
+      await writePages(station.cache, from, pages, position?.completeAt ?? null, deps.now());
       pages = [];
     }
     progress.done += page.answer.changes.length;
@@ -84,6 +86,7 @@ async function settleOwn(station: Station, pages: readonly PullResponse[], now: 
 /** Rows and position in one transaction: never one without the other. A row that came twice counts as it came last. */
 async function writePages(
   cache: Cache,
+  from: string,
   pages: readonly PullResponse[],
   completeAt: string | null,
   now: Date,
@@ -93,6 +96,8 @@ async function writePages(
   const latest = new Map(pages.flatMap(({ changes }) => changes).map((change) => [change.table + change.id, change]));
   const tables = tableNames.map((name) => cache.rows(name));
   await cache.transaction('rw', [...tables, cache.meta], async () => {
+    // Rows were freed meanwhile: only a pull from there brings them back.
+    if (((await cache.meta.get('position'))?.cursor ?? '') !== from) return;
     for (const name of tableNames) {
       const changes = [...latest.values()].filter((change) => change.table === name);
       const gone = changes.flatMap((change) => ('deleted' in change ? [change.id] : []));

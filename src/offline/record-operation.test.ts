@@ -7,7 +7,8 @@ import type { Milligrams } from '#domain/mass.ts';
 import { batchMixed, fresh, fromTub, relocated, returned } from '#tests/support/operations.ts';
 import { tubRow } from '#tests/support/rows.ts';
 import { makeStation, START } from '#tests/support/station.ts';
-import { finishWeighing, RecordError, recordOperation, takeBucketCode } from './record-operation.ts';
+import { RecordError } from './record-error.ts';
+import { finishWeighing, recordOperation, takeBucketCode } from './record-operation.ts';
 import { findWeighing, saveWeighing } from './weighings.ts';
 
 const deps = { now: () => START, randomId: uuidv7 };

@@ -12,8 +12,11 @@ import { makeBucketCode } from '#domain/bucket-code.ts';
 import { hasLapsed } from './grant-age.ts';
 import { findKey, nextOf } from './outbox-keys.ts';
 import type { Outbox } from './outbox.ts';
+import { RecordError } from './record-error.ts';
+import { reopening } from './reopening.ts';
 import type { Station } from './station.ts';
 import { bornBuckets, touchedBuckets } from './touched-buckets.ts';
+import { withRoom } from './with-room.ts';
 
 interface Deps {
   now: () => Date;
@@ -21,16 +24,13 @@ interface Deps {
 }
 const here: Deps = { now: () => new Date(), randomId: uuidv7 };
 
-/** What cannot be recorded; the message says what to do. */
-export class RecordError extends Error {
-  override name = 'RecordError';
-}
-
 /** Queues the operation; what is shown is the cache folded with the queue, so nothing else is written. @throws RecordError */
 export async function recordOperation(station: Station, body: OperationBody, deps: Deps = here): Promise<Operation> {
-  const seen = await seenNow(station, body);
   const { outbox } = station;
-  return outbox.transaction('rw', outbox.ops, outbox.keys, async () => enqueue(station, body, seen, deps));
+  const entry = await beginEntry(station, body, deps);
+  return withRoom(station, deps.now(), () =>
+    outbox.transaction('rw', outbox.ops, outbox.keys, async () => enqueue(station, body, entry, deps)),
+  );
 }
 
 /** Closes an open batch: its operation is queued and the weighing removed in one transaction. @throws RecordError */
@@ -40,26 +40,44 @@ export async function finishWeighing(
   body: OperationBody,
   deps: Deps = here,
 ): Promise<Operation> {
-  const seen = await seenNow(station, body);
   const { outbox } = station;
-  return outbox.transaction('rw', outbox.ops, outbox.keys, outbox.weighings, async () => {
-    if ((await outbox.weighings.get(weighing.id)) === undefined)
-      throw new RecordError('This batch is finished already. Open the Bench.');
-    await outbox.weighings.delete(weighing.id);
-    return enqueue(station, body, seen, deps);
-  });
+  const entry = await beginEntry(station, body, deps);
+  return withRoom(station, deps.now(), () =>
+    outbox.transaction('rw', outbox.ops, outbox.keys, outbox.weighings, async () => {
+      const queued = await outbox.ops.get(entry.opId);
+      if (queued !== undefined) return queued.operation;
+      if ((await outbox.weighings.get(weighing.id)) === undefined)
+        throw new RecordError('This batch is finished already. Open the Bench.');
+      await outbox.weighings.delete(weighing.id);
+      return enqueue(station, body, entry, deps);
+    }),
+  );
 }
 
-/** The next tub code of this install; each is given once. */
-export async function takeBucketCode(station: Station): Promise<string> {
-  const counter = await station.outbox.transaction('rw', station.outbox.keys, async () =>
-    nextOf(station.outbox, 'tubCounter'),
+/** The next tub code of this install; each is given once. @throws RecordError */
+export async function takeBucketCode(station: Station, now: Date = new Date()): Promise<string> {
+  const { outbox } = station;
+  const counter = await withRoom(station, now, () =>
+    outbox.transaction('rw', outbox.keys, async () => nextOf(outbox, 'tubCounter')),
   );
   return makeBucketCode(station.codePrefix, counter);
 }
 
-async function enqueue(station: Station, body: OperationBody, seen: SeenByBucket, deps: Deps): Promise<Operation> {
+/** What stays the same however often the entry is tried: its id, so that it is not written twice, and what was seen. */
+interface Entry {
+  opId: string;
+  seen: SeenByBucket;
+}
+
+async function beginEntry(station: Station, body: OperationBody, deps: Deps): Promise<Entry> {
+  const seen = await reopening([station.cache], () => seenNow(station, body));
+  return { opId: deps.randomId(), seen };
+}
+
+async function enqueue(station: Station, body: OperationBody, { opId, seen }: Entry, deps: Deps): Promise<Operation> {
   const { outbox, person } = station;
+  const queued = await outbox.ops.get(opId);
+  if (queued !== undefined) return queued.operation;
   if (!mayRecord(person.role, body.type)) {
     throw new RecordError(`Not saved: this is not for the role of ${person.role}. Ask a manager.`);
   }
@@ -67,7 +85,7 @@ async function enqueue(station: Station, body: OperationBody, seen: SeenByBucket
   const now = deps.now();
   const recordedAt = now.toISOString();
   const operation = {
-    opId: deps.randomId(),
+    opId,
     installId: station.installId,
     deviceSeq: await nextOf(outbox, 'deviceSeq'),
     opVersion: 1 as const,
@@ -81,7 +99,7 @@ async function enqueue(station: Station, body: OperationBody, seen: SeenByBucket
   } satisfies Operation;
   requireRecordable(operation);
   await outbox.ops.add({
-    opId: operation.opId,
+    opId,
     deviceSeq: operation.deviceSeq,
     operation,
     status: 'waiting',

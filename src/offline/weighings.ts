@@ -1,9 +1,11 @@
 import { type Weighing, weighing as weighingSchema } from '#contract/weighing.ts';
 import type { Station } from './station.ts';
+import { withRoom } from './with-room.ts';
 
-/** Every step is on the disk before it is shown as done. */
-export async function saveWeighing(station: Station, weighing: Weighing): Promise<void> {
-  await station.outbox.weighings.put(weighingSchema.parse(weighing) as Weighing);
+/** Every step is on the disk before it is shown as done. @throws RecordError */
+export async function saveWeighing(station: Station, weighing: Weighing, now: Date = new Date()): Promise<void> {
+  const whole = weighingSchema.parse(weighing) as Weighing;
+  await withRoom(station, now, () => station.outbox.weighings.put(whole));
 }
 
 export function findWeighing(station: Station, id: string): Promise<Weighing | undefined> {

@@ -1,6 +1,7 @@
 import type { OperationBody } from '#contract/operation-bodies.ts';
 import type { Row } from '#contract/rows.ts';
-import { RecordError, takeBucketCode } from '#offline/record-operation.ts';
+import { RecordError } from '#offline/record-error.ts';
+import { takeBucketCode } from '#offline/record-operation.ts';
 import { readShelf } from '#offline/shown.ts';
 import type { Random } from '#scripts/seed/random.ts';
 import { batchMixed, fresh, fromTub, relocated, returned } from '#tests/support/operations.ts';
