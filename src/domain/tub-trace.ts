@@ -1,4 +1,4 @@
-import { type ContentKind, type OpenEntries, addOpen, whyRecount } from './needs-recount.ts';
+import { type ContentKind, type OpenEntries, type RecountReason, addOpen, whyRecount } from './needs-recount.ts';
 import { type Seen, type SeenEntry, knowledgeOf, sizeOf } from './seen.ts';
 import type { Grade } from './compatibility.ts';
 
@@ -72,6 +72,11 @@ export function changeTub<T extends TubFields>(tub: T, entry: SeenEntry, effect:
     seen: withEntry(tub.seen, entry),
     trace,
   };
+}
+
+/** Why a tub must be weighed again; null when it need not, or when its row is from before there were traces. */
+export function recountReasonOf({ trace, balanceMg }: Pick<TubFields, 'trace' | 'balanceMg'>): RecountReason | null {
+  return whyRecount(trace ?? noTrace(), balanceMg);
 }
 
 /** What is known of a tub with one more entry. */

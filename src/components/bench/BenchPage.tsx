@@ -6,6 +6,7 @@ import { useStation } from '#components/ui/station-context.ts';
 import { mayRecord } from '#contract/roles.ts';
 import { DueNext } from './DueNext.tsx';
 import { OpenBatches } from './OpenBatches.tsx';
+import { Recounts } from './Recounts.tsx';
 import { TodaysBatches } from './TodaysBatches.tsx';
 
 export function BenchPage() {
@@ -41,6 +42,7 @@ function Bench() {
       </section>
       <div className="lists">
         <OpenBatches />
+        <Recounts />
         <TodaysBatches />
         <DueNext mixes={mixes} />
       </div>

@@ -40,6 +40,11 @@ describe('what may be done with a tub', () => {
     expect(actsFor(tub({ state: 'empty' }), 'mixer')).toEqual(['return']);
     expect(actsFor(tub({ state: 'discarded' }), 'owner')).toEqual([]);
   });
+  it('is weighed again, or discarded once more, when it is gone by one record and used by another', () => {
+    const gone = tub({ state: 'discarded', needsRecount: true });
+    expect(actsFor(gone, 'mixer')).toEqual(['reweigh', 'discard']);
+    expect(actsFor(tub({ state: 'empty', needsRecount: true }), 'operator')).toEqual(['reweigh', 'return']);
+  });
   it('lets a planner look and print, no more', () => {
     const states: Row<'buckets'>['state'][] = ['shelf', 'at-press', 'quarantine', 'empty'];
     expect(states.flatMap((state) => actsFor(tub({ state }), 'planner'))).toEqual(['label', 'label', 'label']);

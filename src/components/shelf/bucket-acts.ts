@@ -26,10 +26,16 @@ type Tub = Pick<Row<'buckets'>, 'state' | 'released' | 'needsRecount' | 'batchId
 
 /** What this person may do with a tub where it is now. */
 export function actsFor(tub: Tub, role: Role): readonly Act[] {
-  const acts = BY_STATE[tub.state].filter((act) => fits(act, tub, role));
+  const acts = possibleFor(tub).filter((act) => fits(act, tub, role));
   if (tub.needsRecount && acts.includes('reweigh')) return ['reweigh', ...acts.filter((act) => act !== 'reweigh')];
   if (!tub.released && tub.batchId !== null && tub.state === 'shelf' && mayRelease(role)) return ['release', ...acts];
   return acts;
+}
+
+/** Gone by one device's books and used by another's: it is weighed if it is there, and discarded once more if it is not. */
+function possibleFor({ state, needsRecount }: Tub): readonly Act[] {
+  const isGone = state === 'empty' || state === 'discarded';
+  return isGone && needsRecount ? ['reweigh', ...BY_STATE[state], 'discard'] : BY_STATE[state];
 }
 
 /** Those who may release may also issue unreleased ink, with a named reason. */

@@ -1,0 +1,43 @@
+import { Mass } from '#components/ui/Mass.tsx';
+import { Strip } from '#components/ui/Strip.tsx';
+import { recountWords } from '#components/ui/recount-words.ts';
+import { useShelf } from '#components/ui/use-shelf.ts';
+import { formatBucketCode } from '#domain/bucket-code.ts';
+
+/** More than these wait on the Shelf. */
+const MOST = 4;
+
+/** Tubs of which the books are in doubt: a task for whoever is near a scale; it goes when one of them is re-weighed. */
+export function Recounts() {
+  const doubtful = useShelf()?.filter((tub) => tub.needsRecount) ?? [];
+  if (doubtful.length === 0) return null;
+  return (
+    <section className="stack" aria-label="Weigh again">
+      <div className="head">
+        <h2>Weigh again</h2>
+        <span className="ink2">{doubtful.length}</span>
+      </div>
+      {doubtful
+        .toSorted((a, b) => (a.code < b.code ? -1 : 1))
+        .slice(0, MOST)
+        .map((tub) => (
+          <a key={tub.id} className="row" href={`/b/${tub.code}`}>
+            <Strip lab={tub.lab} hiding={tub.hiding} />
+            <div>
+              <b className="wrap-anywhere">Weigh again: {formatBucketCode(tub.code)}</b>
+              <small className="ink2 wrap-anywhere">{tub.name}</small>
+              <span className="badge warn g-warn whitespace-normal">{recountWords(tub)}</span>
+            </div>
+            <span className="num">
+              <Mass mg={tub.balanceMg} />
+            </span>
+          </a>
+        ))}
+      {doubtful.length > MOST ? (
+        <a className="row" href="/shelf">
+          {doubtful.length - MOST} more on the Shelf
+        </a>
+      ) : null}
+    </section>
+  );
+}
