@@ -15,6 +15,8 @@ export interface KnownStation {
 
 /** Days after it was revoked in which a station may still hand in what it recorded. */
 const HAND_IN_DAYS = 30;
+/** When a station was last seen is known to the minute: a write a request would cost more than what is asked. */
+const SEEN_MS = 60_000;
 
 export interface Install {
   id: string;
@@ -29,16 +31,23 @@ export async function findStation(
 ): Promise<KnownStation | undefined> {
   const token = readToken(cookie);
   if (token === undefined) return undefined;
-  const row = await inShop(db, token.shopId, (trx) =>
-    trx
-      .updateTable('stations')
-      .set({ lastSeen: now })
+  const row = await inShop(db, token.shopId, async (trx) => {
+    const known = await trx
+      .selectFrom('stations')
+      .select(['id', 'name', 'revokedAt', 'lastSeen'])
       .where('shopId', '=', token.shopId)
       .where('tokenSha256', '=', token.hash)
       .where('expiresAt', '>', now)
-      .returning(['id', 'name', 'revokedAt'])
-      .executeTakeFirst(),
-  );
+      .executeTakeFirst();
+    if (known !== undefined && now.getTime() - known.lastSeen.getTime() > SEEN_MS)
+      await trx
+        .updateTable('stations')
+        .set({ lastSeen: now })
+        .where('shopId', '=', token.shopId)
+        .where('id', '=', known.id)
+        .execute();
+    return known;
+  });
   if (row === undefined) return undefined;
   const { id: stationId, name, revokedAt } = row;
   const mayHandIn = revokedAt === null || now.getTime() - revokedAt.getTime() < HAND_IN_DAYS * 86_400_000;

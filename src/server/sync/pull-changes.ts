@@ -1,12 +1,13 @@
 import { type SqlBool, sql } from 'kysely';
 import type { PullResponse } from '#contract/pull.ts';
 import { PROTOCOL } from '#contract/push.ts';
-import { type TableName, tableNames } from '#contract/rows.ts';
+import { tableNames } from '#contract/rows.ts';
 import type { Database } from '#server/db/connection.ts';
 import { type ShopTransaction, inShop } from '#server/db/in-shop.ts';
 import { HttpProblem } from '#server/http/http-problem.ts';
 import { type Cursor, cursorAfter, cursorAt, parseCursor } from './pull-cursor.ts';
 import { pullTables } from './pull-rows.ts';
+import { type ChangeKey, readChanges } from './read-changes.ts';
 
 interface Request {
   cursor: string;
@@ -15,16 +16,17 @@ interface Request {
   now: Date;
 }
 
-interface Change {
-  table: TableName;
-  id: string;
-  seq: number;
-  deleted: boolean;
-  row: Record<string, unknown>;
+/** The page of `pullPage`, read. */
+export async function pullChanges(db: Database, shopId: string, request: Request): Promise<PullResponse> {
+  return JSON.parse(await pullPage(db, shopId, request)) as PullResponse;
 }
 
-/** One page of rows and tombstones after the cursor, from one snapshot. @throws HttpProblem 409 'must-refetch' */
-export function pullChanges(db: Database, shopId: string, request: Request): Promise<PullResponse> {
+/**
+ * One page of rows and tombstones after the cursor, from one snapshot, as the JSON text of a pull response: PostgreSQL
+ * writes the rows, and nothing reads them again on their way.
+ * @throws HttpProblem 409 'must-refetch'
+ */
+export function pullPage(db: Database, shopId: string, request: Request): Promise<string> {
   const cursor = parseCursor(request.cursor);
   return inShop(
     db,
@@ -38,74 +40,53 @@ export function pullChanges(db: Database, shopId: string, request: Request): Pro
       if (cursor.seq > shop.seq || (cursor.epoch !== null && cursor.epoch !== shop.epoch)) {
         throw new HttpProblem(409, 'must-refetch', 'Load again', 'This device loads the shop again.');
       }
-      const found = await findChanges(trx, shopId, cursor, request.limit);
-      const more = found.length > request.limit;
+      const found = await findKeys(trx, shopId, cursor, request.limit + 1);
       const page = found.slice(0, request.limit);
-      const last = page.at(-1);
-      const seq = more && last !== undefined ? last.seq - 1 : shop.seq;
-      return {
+      const last = found.length > page.length ? page.at(-1) : undefined;
+      const seq = last === undefined ? shop.seq : last.seq - 1;
+      const head = {
         protocol: PROTOCOL,
         serverTime: request.now.toISOString(),
-        cursor:
-          more && last !== undefined
-            ? cursorAt(shop.epoch, last.seq, last.table, last.id)
-            : cursorAfter(shop.epoch, shop.seq),
+        cursor: last === undefined ? cursorAfter(shop.epoch, shop.seq) : cursorAt(shop.epoch, last),
         seq,
-        more,
+        more: last !== undefined,
         remaining: request.cursor === '' ? (await countRows(trx, shopId)) - page.length : null,
-        changes: page.map(({ table, id, deleted, row }) =>
-          deleted ? { table, id, deleted: true as const } : { table, id, row: { id, ...row } },
-        ),
         own: await ownOperations(trx, shopId, request.installId, cursor.seq, seq),
       };
+      const changes = await readChanges(trx, shopId, page);
+      return `${JSON.stringify(head).slice(0, -1)},"changes":[${changes.join(',')}]}`;
     },
     { snapshot: true },
   );
 }
 
-async function findChanges(trx: ShopTransaction, shopId: string, cursor: Cursor, limit: number): Promise<Change[]> {
-  const all: Change[] = [];
-  for (const [index, table] of tableNames.entries())
-    all.push(...(await changesOf(trx, shopId, cursor, index, table, limit + 1)));
-  const order = (change: Change) => tableNames.indexOf(change.table);
-  return all.sort((a, b) => a.seq - b.seq || order(a) - order(b) || (a.id < b.id ? -1 : 1)).slice(0, limit + 1);
+/** The next changes of all tables in the order of (change sequence, table, id), from the indexes alone. */
+async function findKeys(trx: ShopTransaction, shopId: string, cursor: Cursor, limit: number): Promise<ChangeKey[]> {
+  const ofTables = tableNames.map((name, place) => {
+    const { table } = pullTables[name];
+    const shop = name === 'shop' ? sql.ref('t.id') : sql.ref('t.shop_id');
+    return sql`(select ${sql.lit(place)} as place, t.id, t.change_seq as seq from ${sql.table(table)} t
+      where ${shop} = ${shopId} and ${after(cursor, place)} order by t.change_seq, t.id limit ${limit})`;
+  });
+  const found = await sql<ChangeKey>`
+    select place, id, seq from (${sql.join(ofTables, sql` union all `)}) k
+    order by seq, place, id limit ${limit}`.execute(trx);
+  return found.rows;
 }
 
-async function changesOf(
-  trx: ShopTransaction,
-  shopId: string,
-  cursor: Cursor,
-  index: number,
-  name: TableName,
-  limit: number,
-): Promise<Change[]> {
-  const { table, row } = pullTables[name];
-  const shop = name === 'shop' ? sql.ref('t.id') : sql.ref('t.shop_id');
-  const result = await sql<{ id: string; seq: number; deleted: boolean; row: Record<string, unknown> }>`
-    select t.id, t.change_seq as seq, t.deleted_at is not null as deleted, ${row} as row
-    from ${sql.table(table)} t
-    where ${shop} = ${shopId} and ${after(cursor, index)}
-    order by t.change_seq, t.id
-    limit ${limit}`.execute(trx);
-  return result.rows.map((found) => ({ table: name, ...found }));
-}
-
-function after(cursor: Cursor, index: number) {
-  if (index > cursor.table) return sql<SqlBool>`t.change_seq >= ${cursor.seq}`;
-  if (index < cursor.table) return sql<SqlBool>`t.change_seq > ${cursor.seq}`;
+function after(cursor: Cursor, place: number) {
+  if (place > cursor.table) return sql<SqlBool>`t.change_seq >= ${cursor.seq}`;
+  if (place < cursor.table) return sql<SqlBool>`t.change_seq > ${cursor.seq}`;
   return sql<SqlBool>`(t.change_seq, t.id) > (${cursor.seq}, ${cursor.id}::uuid)`;
 }
 
 async function countRows(trx: ShopTransaction, shopId: string): Promise<number> {
-  let total = 0;
-  for (const name of tableNames) {
+  const counts = tableNames.map((name) => {
     const shop = name === 'shop' ? sql.ref('id') : sql.ref('shop_id');
-    const result = await sql<{
-      count: number;
-    }>`select count(*) as count from ${sql.table(pullTables[name].table)} where ${shop} = ${shopId}`.execute(trx);
-    total += Number(result.rows[0]?.count ?? 0);
-  }
-  return total;
+    return sql`(select count(*) from ${sql.table(pullTables[name].table)} where ${shop} = ${shopId})`;
+  });
+  const result = await sql<{ count: number }>`select ${sql.join(counts, sql` + `)} as count`.execute(trx);
+  return Number(result.rows[0]?.count ?? Number.NaN);
 }
 
 /** This install's operations that the rows up to `seq` contain. */

@@ -1,6 +1,3 @@
-import type { TableName } from '#contract/rows.ts';
-import { tableNames } from '#contract/rows.ts';
-
 /** The last row that was read: everything after it in the order of (change sequence, table, id) is still to come. */
 export interface Cursor {
   epoch: string | null;
@@ -21,8 +18,8 @@ export function parseCursor(text: string): Cursor {
   return { epoch, seq: Number(seq), table: Number(table), id };
 }
 
-export function cursorAt(epoch: string, seq: number, table: TableName, id: string): string {
-  return `${epoch}:${seq}:${tableNames.indexOf(table)}:${id}`;
+export function cursorAt(epoch: string, last: { seq: number; place: number; id: string }): string {
+  return `${epoch}:${last.seq}:${last.place}:${last.id}`;
 }
 
 export function cursorAfter(epoch: string, seq: number): string {

@@ -2,7 +2,7 @@ import type { APIRoute } from 'astro';
 import { pullCursor } from '#contract/pull.ts';
 import { database } from '#server/db/connection.ts';
 import { HttpProblem } from '#server/http/http-problem.ts';
-import { pullChanges } from '#server/sync/pull-changes.ts';
+import { pullPage } from '#server/sync/pull-changes.ts';
 
 const LARGEST_PAGE = 2000;
 const UUID = /^[0-9a-f-]{36}$/;
@@ -15,7 +15,7 @@ export const GET: APIRoute = async ({ locals, url }) => {
   const limit = Math.min(LARGEST_PAGE, Math.max(1, Number(url.searchParams.get('limit')) || 500));
   const install = url.searchParams.get('install') ?? '';
   const installId = UUID.test(install) ? install : undefined;
-  return Response.json(
-    await pullChanges(database(), station.shopId, { cursor: cursor.data, limit, installId, now: new Date() }),
-  );
+  const request = { cursor: cursor.data, limit, installId, now: new Date() };
+  const page = await pullPage(database(), station.shopId, request);
+  return new Response(page, { headers: { 'content-type': 'application/json' } });
 };
