@@ -203,3 +203,21 @@ test('a stopped loop asks nothing more', async () => {
 async function letItShow(): Promise<void> {
   await new Promise((resolve) => setTimeout(resolve, 50));
 }
+
+test('a connection to the database that is lost in the middle of a run is opened again, and the run ends well', async () => {
+  const station = await makeStation();
+  await recordOperation(station, relocated(uuidv7()));
+  const waiting = station.outbox.ops.where.bind(station.outbox.ops);
+  let lost = 0;
+  Object.assign(station.outbox.ops, {
+    where: (...words: Parameters<typeof waiting>) => {
+      if (++lost === 1) throw new DOMException('Connection to Indexed Database server lost.', 'UnknownError');
+      return waiting(...words);
+    },
+  });
+  const { begin } = start(station, working);
+  const sync = begin();
+  await sync.sendNow();
+  expect(sync.state.getSnapshot().phase).toBe('idle');
+  expect((await readQueue(station)).waiting).toEqual([]);
+});

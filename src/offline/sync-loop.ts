@@ -1,4 +1,7 @@
 import { v7 as uuidv7 } from 'uuid';
+import { isDiskFull } from './disk-error.ts';
+import { RecordError } from './record-error.ts';
+import { reopening } from './reopening.ts';
 import { isLoaded } from './shown.ts';
 import type { Station } from './station.ts';
 import { type Surroundings, syncLock, thisBrowser } from './surroundings.ts';
@@ -84,13 +87,20 @@ async function runOnce(
 ): Promise<SyncResult> {
   if (!around.isOnline()) return { kind: 'offline' };
   try {
-    const loaded = await isLoaded(station);
-    state.set({ ...state.getSnapshot(), phase: loaded ? 'sending' : 'loading' });
-    return await syncOnce(station, deps, (progress) => state.set({ ...state.getSnapshot(), loaded: progress }));
+    return await reopening([station.outbox, station.cache], async () => {
+      const loaded = await isLoaded(station);
+      state.set({ ...state.getSnapshot(), phase: loaded ? 'sending' : 'loading' });
+      return syncOnce(station, deps, (progress) => state.set({ ...state.getSnapshot(), loaded: progress }));
+    });
   } catch (error) {
-    const why = error instanceof Error ? error.message : String(error);
-    return { kind: 'failed', problem: `This device could not keep what came: ${why}`, retryAfterMs: null };
+    return { kind: 'failed', problem: whyNotKept(error), retryAfterMs: null };
   }
+}
+
+function whyNotKept(error: unknown): string {
+  if (error instanceof RecordError) return error.message;
+  if (isDiskFull(error)) return 'This device is full. Delete something else on it; what was recorded is safe.';
+  return `This device could not keep what came: ${error instanceof Error ? error.message : String(error)}`;
 }
 
 function waitAfter(result: SyncResult | undefined, around: Surroundings): number {

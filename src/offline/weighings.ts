@@ -1,4 +1,5 @@
 import { type Weighing, weighing as weighingSchema } from '#contract/weighing.ts';
+import { reopening } from './reopening.ts';
 import type { Station } from './station.ts';
 import { withRoom } from './with-room.ts';
 
@@ -9,15 +10,15 @@ export async function saveWeighing(station: Station, weighing: Weighing, now: Da
 }
 
 export function findWeighing(station: Station, id: string): Promise<Weighing | undefined> {
-  return station.outbox.weighings.get(id);
+  return reopening([station.outbox], () => station.outbox.weighings.get(id));
 }
 
 /** Open batches, the one touched last first. */
 export async function listWeighings(station: Station): Promise<Weighing[]> {
-  const open = await station.outbox.weighings.toArray();
+  const open = await reopening([station.outbox], () => station.outbox.weighings.toArray());
   return open.sort((a, b) => b.updatedAt.localeCompare(a.updatedAt));
 }
 
 export async function removeWeighing(station: Station, id: string): Promise<void> {
-  await station.outbox.weighings.delete(id);
+  await reopening([station.outbox], () => station.outbox.weighings.delete(id));
 }

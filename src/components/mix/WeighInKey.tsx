@@ -1,5 +1,7 @@
 import { useState } from 'react';
+import { Unsaved } from '#components/ui/Unsaved.tsx';
 import { useStation } from '#components/ui/station-context.ts';
+import { whyUnsaved } from '#components/ui/why-unsaved.ts';
 import { formatGrams } from '#domain/format-mass.ts';
 import type { Milligrams } from '#domain/mass.ts';
 import { saveWeighing } from '#offline/weighings.ts';
@@ -22,6 +24,7 @@ export function WeighInKey({
 }) {
   const { station } = useStation();
   const [opening, setOpening] = useState(false);
+  const [unsaved, setUnsaved] = useState<string>();
   if (amount.state !== 'ok') {
     return (
       <button type="button" className="key wide log-key" disabled>
@@ -38,12 +41,20 @@ export function WeighInKey({
     if (amount.state !== 'ok' || opening) return;
     setOpening(true);
     const weighing = openWeighing({ facts, plan, scale: amount.scale, personId: station.person.id, now: new Date() });
-    await saveWeighing(station, weighing);
-    location.assign(`/weigh?batch=${weighing.id}`);
+    try {
+      await saveWeighing(station, weighing);
+      location.assign(`/weigh?batch=${weighing.id}`);
+    } catch (error) {
+      setOpening(false);
+      setUnsaved(whyUnsaved(error));
+    }
   }
   return (
-    <button type="button" className="key go wide" disabled={opening} onClick={() => void start()}>
-      Weigh in {formatGrams(amount.mass, amount.scale.readabilityMg as Milligrams, station.shop.locale)} g
-    </button>
+    <>
+      {unsaved === undefined ? null : <Unsaved why={unsaved} />}
+      <button type="button" className="key go wide" disabled={opening} onClick={() => void start()}>
+        Weigh in {formatGrams(amount.mass, amount.scale.readabilityMg as Milligrams, station.shop.locale)} g
+      </button>
+    </>
   );
 }

@@ -1,5 +1,8 @@
+import { useState } from 'react';
 import { Mass } from '#components/ui/Mass.tsx';
+import { Unsaved } from '#components/ui/Unsaved.tsx';
 import { useStation } from '#components/ui/station-context.ts';
+import { whyUnsaved } from '#components/ui/why-unsaved.ts';
 import type { Weighing } from '#contract/weighing.ts';
 import type { Milligrams } from '#domain/mass.ts';
 import { saveWeighing } from '#offline/weighings.ts';
@@ -10,6 +13,7 @@ import type { WeighFacts } from './use-weigh-facts.ts';
 /** Takes the last entry back; it names its mass and stays until the next entry. */
 export function UndoKey({ weighing, facts }: { weighing: Weighing; facts: WeighFacts }) {
   const { station } = useStation();
+  const [unsaved, setUnsaved] = useState<string>();
   const last = weighing.additions.at(-1);
   if (last === undefined) return null;
   const target = {
@@ -18,12 +22,15 @@ export function UndoKey({ weighing, facts }: { weighing: Weighing; facts: WeighF
     readability: facts.scale.readabilityMg as Milligrams,
     now: new Date(),
   };
+  const undo = () =>
+    saveWeighing(station, undoAddition(weighing, target)).catch((error: unknown) => setUnsaved(whyUnsaved(error)));
+  if (unsaved !== undefined) return <Unsaved why={unsaved} />;
   return (
     <button
       type="button"
       className="key text-18 px-3"
       aria-label={`Undo ${nameOf(last, facts)}`}
-      onClick={() => void saveWeighing(station, undoAddition(weighing, target))}
+      onClick={() => void undo()}
     >
       <span className="g g-undo">
         <span className="num">

@@ -7,6 +7,7 @@ import { LogKey } from './LogKey.tsx';
 import { Overshot } from './Overshot.tsx';
 import { Reading } from './Reading.tsx';
 import { StepList } from './StepList.tsx';
+import { Unsaved } from '#components/ui/Unsaved.tsx';
 import { UndoKey } from './UndoKey.tsx';
 import { describeStep } from './describe-step.ts';
 import { useStepEntry } from './use-step-entry.ts';
@@ -23,13 +24,16 @@ export function WeighStep({ weighing, facts }: { weighing: Weighing; facts: Weig
   const what = describeStep(step, facts);
   const number = weighing.additions.length + 1;
   const top = (
-    <Top
-      title={facts.formula.name}
-      sub={`Step ${number} of ${weighing.additions.length + weighing.remaining.length} · ${facts.scale.name}`}
-      back={{ href: '/', label: 'Leave, the batch stays open' }}
-    >
-      <UndoKey weighing={weighing} facts={facts} />
-    </Top>
+    <>
+      <Top
+        title={facts.formula.name}
+        sub={`Step ${number} of ${weighing.additions.length + weighing.remaining.length} · ${facts.scale.name}`}
+        back={{ href: '/', label: 'Leave, the batch stays open' }}
+      >
+        <UndoKey weighing={weighing} facts={facts} />
+      </Top>
+      {entry.unsaved === undefined ? null : <Unsaved why={entry.unsaved} />}
+    </>
   );
   if (shownOver && entry.over !== undefined) {
     return (

@@ -1,6 +1,7 @@
 import { useEffect, useMemo, useState } from 'react';
 import { typeDigit } from '#components/ui/typed-digits.ts';
 import { useStation } from '#components/ui/station-context.ts';
+import { whyUnsaved } from '#components/ui/why-unsaved.ts';
 import type { Weighing } from '#contract/weighing.ts';
 import type { Milligrams } from '#domain/mass.ts';
 import { parseMass } from '#domain/parse-mass.ts';
@@ -13,6 +14,8 @@ export interface StepEntry {
   text: string;
   mass: Milligrams | undefined;
   problem: string | undefined;
+  /** Why the last entry did not reach the disk. */
+  unsaved: string | undefined;
   onTarget: boolean;
   /** Set when logging this would need a repair. */
   over: Overshoot | undefined;
@@ -33,6 +36,7 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
   const step = weighing.remaining[0];
   const [text, setText] = useState('');
   const [logging, setLogging] = useState(false);
+  const [unsaved, setUnsaved] = useState<string>();
   const empties = step?.kind === 'bucket' && step.empties;
   const type = (key: string) => setText((before) => typeDigit(before, key));
   useKeyboard(type);
@@ -45,6 +49,7 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
   async function log(emptied: boolean = empties) {
     if (read.mass === undefined || step === undefined || logging) return;
     setLogging(true);
+    setUnsaved(undefined);
     const lotId = step.kind === 'component' ? (facts.lots.get(step.componentId)?.id ?? null) : null;
     const next = logAddition(
       weighing,
@@ -56,12 +61,18 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
         now: new Date(),
       },
     );
-    await saveWeighing(station, next);
-    navigator.vibrate?.(60);
+    try {
+      await saveWeighing(station, next);
+      navigator.vibrate?.(60);
+    } catch (error) {
+      setLogging(false);
+      setUnsaved(whyUnsaved(error));
+    }
   }
   return {
     text,
     ...read,
+    unsaved,
     onTarget: verdict?.onTarget ?? false,
     over: verdict?.over,
     asksEmptied: empties && read.mass !== undefined && read.mass < step.plannedMg * ASK_BELOW,
