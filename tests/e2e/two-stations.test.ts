@@ -32,7 +32,9 @@ const [first, second] = [
   () => stations[1] as (typeof stations)[number],
 ];
 const task = (page: Page) =>
-  page.getByRole('link', { name: `Weigh again: ${tub.code.slice(0, 4)}-${tub.code.slice(4)}` });
+  page
+    .getByRole('region', { name: 'Weigh again' })
+    .getByRole('link', { name: `${tub.code.slice(0, 4)}-${tub.code.slice(4)}` });
 
 test('two stations without a network spend the same tub, and neither sees the other', async () => {
   for (const [n, { context, page }] of stations.entries()) {

@@ -41,8 +41,8 @@ function Bench() {
         </a>
       </section>
       <div className="lists">
-        <OpenBatches />
         <Recounts />
+        <OpenBatches />
         <TodaysBatches />
         <DueNext mixes={mixes} />
       </div>

@@ -1,18 +1,23 @@
-import { Mass } from '#components/ui/Mass.tsx';
 import { Strip } from '#components/ui/Strip.tsx';
 import { recountWords } from '#components/ui/recount-words.ts';
+import { useRows } from '#components/ui/use-rows.ts';
 import { useShelf } from '#components/ui/use-shelf.ts';
 import { formatBucketCode } from '#domain/bucket-code.ts';
 
 /** More than these wait on the Shelf. */
-const MOST = 4;
+const MOST = 3;
 
-/** Tubs of which the books are in doubt: a task for whoever is near a scale; it goes when one of them is re-weighed. */
+/**
+ * Tubs of which the books are in doubt: a task for whoever is near a scale; it goes when one of them is re-weighed. What
+ * the books hold is not shown, so that nobody reads it off.
+ */
 export function Recounts() {
-  const doubtful = useShelf()?.filter((tub) => tub.needsRecount) ?? [];
+  const shelf = useShelf();
+  const places = useRows('locations');
+  const doubtful = shelf?.filter((tub) => tub.needsRecount) ?? [];
   if (doubtful.length === 0) return null;
   return (
-    <section className="stack" aria-label="Weigh again">
+    <section className="stack col-span-full" aria-label="Weigh again">
       <div className="head">
         <h2>Weigh again</h2>
         <span className="ink2">{doubtful.length}</span>
@@ -24,13 +29,14 @@ export function Recounts() {
           <a key={tub.id} className="row" href={`/b/${tub.code}`}>
             <Strip lab={tub.lab} hiding={tub.hiding} />
             <div>
-              <b className="wrap-anywhere">Weigh again: {formatBucketCode(tub.code)}</b>
-              <small className="ink2 wrap-anywhere">{tub.name}</small>
-              <span className="badge warn g-warn whitespace-normal">{recountWords(tub)}</span>
+              <b className="nowrap">{formatBucketCode(tub.code)}</b>
+              <small className="ink2 wrap-anywhere">
+                {[tub.name, tub.locationId === null ? undefined : places?.get(tub.locationId)?.code]
+                  .filter((piece) => piece !== undefined)
+                  .join(' · ')}
+              </small>
+              <span className="badge g-warn whitespace-normal">{recountWords(tub)}</span>
             </div>
-            <span className="num">
-              <Mass mg={tub.balanceMg} />
-            </span>
           </a>
         ))}
       {doubtful.length > MOST ? (
