@@ -117,6 +117,9 @@ export const bucketAdopted = z.strictObject({
   lab: z.nullable(z.strictObject({ l: z.number(), a: z.number(), b: z.number() })),
 });
 
+/** An entry that the server refused and a person lets go; `reason` is for whoever looks at it later. */
+export const entryDropped = z.strictObject({ opId: uuid, reason: shortText });
+
 /** Every operation a station may record, by type. `opVersion` of each is 1. */
 export const operationBodies = {
   'batch-mixed': batchMixed,
@@ -128,6 +131,7 @@ export const operationBodies = {
   'bucket-discarded': bucketDiscarded,
   'bucket-adopted': bucketAdopted,
   'shift-reported': shiftReported,
+  'entry-dropped': entryDropped,
 } as const;
 
 export type OperationType = keyof typeof operationBodies;

@@ -35,4 +35,7 @@ export const operation = z.discriminatedUnion('type', typed as never) as unknown
 /** What must be readable for a refused operation to be listed at all. */
 export const operationId = z.looseObject({ opId: uuid });
 
+/** What an entry that cannot be read corrects, if it says so. */
+export const corrected = z.looseObject({ supersedes: uuid });
+
 export const LARGEST_OPERATION_BYTES = 64 * 1024;

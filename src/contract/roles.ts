@@ -18,6 +18,8 @@ export const operationRoles: Readonly<Record<OperationType, readonly Role[]>> = 
   'bucket-discarded': ink,
   'bucket-adopted': ink,
   'shift-reported': ink,
+  /** Of these, whoever may record what is dropped. */
+  'entry-dropped': press,
 };
 
 /** True when `person` may record an operation of this type. */

@@ -42,6 +42,7 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
     case 'bucket-adopted':
       return { ...shown, buckets: new Map(shown.buckets).set(operation.body.bucketId, adoptedTub(operation)) };
     case 'shift-reported':
+    case 'entry-dropped':
       return shown;
   }
 }

@@ -23,6 +23,7 @@ export function describeOperation(operation: Operation, names: Names): { title: 
   }
   if (operation.type === 'batch-released') return { title: 'Released a batch', massMg: undefined };
   if (operation.type === 'shift-reported') return { title: 'Shift summary to the manager', massMg: undefined };
+  if (operation.type === 'entry-dropped') return { title: 'Dropped a log', massMg: undefined };
   const bucket = names.buckets.get(operation.body.bucketId);
   const title = `${VERBS[operation.type]} ${bucket?.name ?? 'a tub'}`;
   const weighed = operation.type === 'bucket-returned' || operation.type === 'bucket-recounted';

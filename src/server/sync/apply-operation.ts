@@ -33,5 +33,8 @@ export function applyOperation(context: ApplyContext): void {
       return adoptBucket(context, operation.body);
     case 'shift-reported':
       return applyShiftReported(context, operation.body);
+    case 'entry-dropped':
+      // It changes no ink: `RefusedEntries` settles what it names.
+      return;
   }
 }

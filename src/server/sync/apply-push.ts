@@ -15,7 +15,9 @@ import { PushBook, PushDraft } from './push-book.ts';
 import { readFacts } from './push-facts.ts';
 import { referencesOf } from './push-references.ts';
 import { quarantine } from './quarantine.ts';
+import { RefusedEntries } from './refused-entries.ts';
 import { bornWith } from './refused-tubs.ts';
+import { resolveRefusals } from './resolve-refusals.ts';
 import { writePush } from './write-push.ts';
 
 export interface PushDeps {
@@ -95,6 +97,7 @@ async function takeAll(
     await inShop(db, station.shopId, async (trx) => {
       await nextSeq(trx, station.shopId);
       await quarantine(trx, station, [refused], deps);
+      await resolveRefusals(trx, station, [], [refused], deps);
     });
     return [{ opId: first.opId, outcome: 'rejected', problem: refused.problem }];
   }
@@ -109,10 +112,14 @@ async function takeTogether(
   const seq = await nextSeq(trx, station.shopId);
   const operations = received.flatMap(({ parsed }) => ('operation' in parsed ? parsed.operation : []));
   const book = new PushBook(await readFacts(trx, station, referencesOf(operations)));
+  const earlier = await RefusedEntries.read(trx, station.shopId, received);
+  const accepted: Operation[] = [];
   const refused: Refused[] = [];
   const results = received.map((entry): PushOutcome => {
     try {
-      return takeOne(book, station, entry, seq, deps);
+      const outcome = takeOne(book, earlier, station, entry, seq, deps);
+      if (outcome.outcome === 'accepted' && 'operation' in entry.parsed) accepted.push(entry.parsed.operation);
+      return outcome;
     } catch (error) {
       if (error instanceof NotYetError) return { opId: entry.opId, outcome: 'retry' };
       const problem = problemOf(error, entry);
@@ -123,6 +130,7 @@ async function takeTogether(
   });
   await writePush(trx, station.shopId, seq, book);
   await quarantine(trx, station, refused, deps);
+  await resolveRefusals(trx, station, accepted, refused, deps);
   return results;
 }
 
@@ -139,11 +147,14 @@ async function nextSeq(trx: ShopTransaction, shopId: string): Promise<number> {
 
 function takeOne(
   book: PushBook,
-  { shopId, revoked }: PushStation,
+  earlier: RefusedEntries,
+  station: PushStation,
   entry: Received,
   seq: number,
   deps: PushDeps,
 ): PushOutcome {
+  const { shopId, revoked } = station;
+  earlier.requireNew(entry, station);
   if ('problem' in entry.parsed) throw new RejectedError('unreadable', `Not readable. ${entry.parsed.problem}.`);
   const { operation } = entry.parsed;
   const { opId } = operation;
@@ -155,7 +166,7 @@ function takeOne(
   }
   if (revoked === true)
     throw new RejectedError('station-revoked', 'This device was revoked. A manager looks at what it recorded.');
-  requireAuthorised(book.facts, operation);
+  earlier.requireMaySettle(operation, requireAuthorised(book.facts, operation));
   const receivedAt = deps.now();
   const at = correctedTime(operation, receivedAt);
   const draft = new PushDraft(book);
@@ -177,6 +188,7 @@ function takeOne(
   });
   applyOperation({ shopId, seq, operation, at, draft });
   book.accept(draft);
+  earlier.accept(operation);
   return { opId, outcome: 'accepted', changeSeq: seq };
 }
 

@@ -3,8 +3,12 @@ import { type Role, mayRecord } from '#contract/roles.ts';
 import { RejectedError } from './apply-context.ts';
 import type { PushFacts } from './push-facts.ts';
 
-/** By the role in the grant that the operation names, issued for this station and this person. @throws RejectedError */
-export function requireAuthorised({ installs, grants }: PushFacts, operation: Operation): void {
+/**
+ * By the role in the grant that the operation names, issued for this station and this person.
+ * @returns that role
+ * @throws RejectedError
+ */
+export function requireAuthorised({ installs, grants }: PushFacts, operation: Operation): Role {
   if (!installs.has(operation.installId))
     throw new RejectedError('wrong-station', 'This entry was recorded on another device.');
   const grant = grants.get(operation.grantId);
@@ -13,4 +17,5 @@ export function requireAuthorised({ installs, grants }: PushFacts, operation: Op
   if (!mayRecord(grant.role as Role, operation.type)) {
     throw new RejectedError('wrong-role', `A ${grant.role} may not record this. Ask a manager.`);
   }
+  return grant.role as Role;
 }
