@@ -72,9 +72,16 @@ export class SignInError extends Error {
   override name = 'SignInError';
 }
 
-/** Keeps what a sign-in or a renewal answered, in the databases of that shop and install. @throws SignInError */
+/**
+ * Keeps what a sign-in or a renewal answered, in the databases of that shop and install; of an answer whose grant does
+ * not verify, nothing.
+ * @throws SignInError
+ */
 export async function saveSignIn(response: SignInResponse, browser: Browser = here()): Promise<Station> {
   const { shop, install } = response;
+  const claims = await verifyGrant(response.grant, response.keys);
+  if (claims === undefined || claims.shop !== shop.id || claims.station !== response.station.id)
+    throw new SignInError('The server signed with a key that it does not publish. Show this to a manager.');
   const outbox = new Outbox(shop.id, install.id);
   await outbox.transaction('rw', outbox.keys, async () => {
     await keepCounters(outbox, install.lastSeq);
@@ -87,8 +94,7 @@ export async function saveSignIn(response: SignInResponse, browser: Browser = he
     await putKey(outbox, 'clock', { offsetMs, uncertaintyMs: 2000, lastContact: response.serverTime });
   });
   const station = await openWith(outbox, { shopId: shop.id, installId: install.id }, browser.now());
-  if (station === undefined)
-    throw new SignInError('The server signed with a key that it does not publish. Show this to a manager.');
+  if (station === undefined) throw new SignInError('This browser lost what was just kept. Sign in again.');
   enterInstall(browser.storage, shop.id, install.id);
   return station;
 }
@@ -98,6 +104,13 @@ async function keepCounters(outbox: Outbox, lastSeq: number): Promise<void> {
   if (lastSeq <= ((await findKey(outbox, 'deviceSeq')) ?? 0)) return;
   await putKey(outbox, 'deviceSeq', lastSeq);
   await putKey(outbox, 'tubCounter', Math.max((await findKey(outbox, 'tubCounter')) ?? 0, lastSeq));
+}
+
+/** Another tab of this browser may have renewed the grant: the person at work goes on under the new one. */
+export async function takeRenewedGrant(station: Station, now: Date): Promise<void> {
+  const { shop, installId, person } = station;
+  const opened = await openWith(station.outbox, { shopId: shop.id, installId }, now);
+  if (opened?.person.id === person.id && opened.grant.expiresAt > station.grant.expiresAt) station.grant = opened.grant;
 }
 
 /** Clears what can be pulled again and the way in; what was recorded here stays. */

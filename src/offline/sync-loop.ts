@@ -3,7 +3,7 @@ import { isDiskFull } from './disk-error.ts';
 import { RecordError } from './record-error.ts';
 import { reopening } from './reopening.ts';
 import { isLoaded } from './shown.ts';
-import type { Station } from './station.ts';
+import { type Station, takeRenewedGrant } from './station.ts';
 import { type Surroundings, syncLock, thisBrowser } from './surroundings.ts';
 import { syncOnce } from './sync-once.ts';
 import type { SyncDeps, SyncResult } from './sync-result.ts';
@@ -88,6 +88,7 @@ async function runOnce(
   if (!around.isOnline()) return { kind: 'offline' };
   try {
     return await reopening([station.outbox, station.cache], async () => {
+      await takeRenewedGrant(station, deps.now());
       const loaded = await isLoaded(station);
       state.set({ ...state.getSnapshot(), phase: loaded ? 'sending' : 'loading' });
       return syncOnce(station, deps, (progress) => state.set({ ...state.getSnapshot(), loaded: progress }));

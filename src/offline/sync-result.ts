@@ -18,10 +18,15 @@ export interface SyncDeps {
   randomId: () => string;
 }
 
+const PORTAL = 'This network asks for something first. Open a web page.';
+
 /** What an answer other than 200 with JSON means; null when it may be read. */
 export async function refusalOf(response: Response, now: Date): Promise<SyncResult | null> {
-  const isJson = /^application\/json\b/.test(response.headers.get('content-type') ?? '');
-  if (response.status === 200 && isJson) return null;
+  const type = response.headers.get('content-type') ?? '';
+  if (response.status === 200 && /^application\/json\b/.test(type)) return null;
+  // Whoever answers with a page is not the server: what it denies was not asked of it.
+  const isPage = /^(text\/html|application\/xhtml)/.test(type);
+  if (isPage && response.status < 500) return { kind: 'failed', problem: PORTAL, retryAfterMs: null };
   if (response.status === 401) return { kind: 'signed-out' };
   if (response.status === 403)
     return {
@@ -32,7 +37,7 @@ export async function refusalOf(response: Response, now: Date): Promise<SyncResu
 }
 
 async function whyFailed(response: Response): Promise<string> {
-  if (response.ok) return 'This network asks for something first. Open a web page.';
+  if (response.ok) return PORTAL;
   if (response.status === 429 || response.status >= 500) return 'The server is busy. It tries again.';
   return (await detailOf(response)) ?? `The server answered ${response.status}. It tries again.`;
 }
