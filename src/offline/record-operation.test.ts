@@ -1,3 +1,4 @@
+import { Dexie } from 'dexie';
 import { v7 as uuidv7 } from 'uuid';
 import { expect, test } from 'vitest';
 import type { OperationBody } from '#contract/operation-bodies.ts';
@@ -7,6 +8,7 @@ import type { Milligrams } from '#domain/mass.ts';
 import { batchMixed, fresh, fromTub, relocated, returned } from '#tests/support/operations.ts';
 import { tubRow } from '#tests/support/rows.ts';
 import { makeStation, START } from '#tests/support/station.ts';
+import { Outbox, type QueuedOperation } from './outbox.ts';
 import { RecordError } from './record-error.ts';
 import { finishWeighing, recordOperation, takeBucketCode } from './record-operation.ts';
 import { findWeighing, saveWeighing } from './weighings.ts';
@@ -15,7 +17,8 @@ const deps = { now: () => START, randomId: uuidv7 };
 
 test('an entry is on the disk with who, where, when and under which grant', async () => {
   const station = await makeStation();
-  const operation = await recordOperation(station, relocated(uuidv7()), deps);
+  const bucketId = uuidv7();
+  const operation = await recordOperation(station, relocated(bucketId), deps);
   expect(operation).toMatchObject({
     installId: station.installId,
     deviceSeq: 1,
@@ -32,6 +35,7 @@ test('an entry is on the disk with who, where, when and under which grant', asyn
       opId: operation.opId,
       deviceSeq: 1,
       operation,
+      tubs: [bucketId],
       status: 'waiting',
       changeSeq: null,
       problem: null,
@@ -119,6 +123,38 @@ test('an entry that the server refused is not known', async () => {
   const refused = await recordOperation(station, relocated(tubId));
   await station.outbox.ops.update(refused.opId, { status: 'rejected' });
   expect((await recordOperation(station, relocated(tubId))).seen).toEqual({ [tubId]: {} });
+});
+
+test('an entry costs no more than the first, however many wait of other tubs', async () => {
+  const station = await makeStation();
+  const [mine, other] = [tubRow(), tubRow()];
+  await station.cache.rows('buckets').bulkPut([mine, other]);
+  for (let n = 0; n < 40; n++) await recordOperation(station, relocated(other.id), deps);
+  let read = 0;
+  station.outbox.ops.hook('reading', (queued: QueuedOperation | undefined) => {
+    if (queued !== undefined) read += 1;
+    return queued as QueuedOperation;
+  });
+  await recordOperation(station, relocated(mine.id), deps);
+  await recordOperation(station, relocated(mine.id), deps);
+  expect(read).toBe(1);
+});
+
+test('an outbox of before there was the index of tubs is opened with all that it holds, and known', async () => {
+  const station = await makeStation();
+  const tub = tubRow();
+  await station.cache.rows('buckets').put(tub);
+  const { deviceSeq } = await recordOperation(station, relocated(tub.id), deps);
+  const [{ tubs: _, ...queued }] = (await station.outbox.ops.toArray()) as [QueuedOperation];
+  await station.outbox.delete();
+  const before = new Dexie(station.outbox.name);
+  before.version(1).stores({ ops: '&opId, deviceSeq, status', weighings: '&id', keys: '&name' });
+  await before.table('ops').add(queued);
+  before.close();
+  station.outbox = new Outbox(station.shop.id, station.installId);
+  expect(await station.outbox.ops.toArray()).toEqual([{ ...queued, tubs: [tub.id] }]);
+  const next = await recordOperation(station, relocated(tub.id), deps);
+  expect(next.seen[tub.id]).toEqual({ [station.installId]: deviceSeq });
 });
 
 test('a batch names every tub that it took from', async () => {

@@ -15,7 +15,7 @@ import type { Outbox } from './outbox.ts';
 import { RecordError } from './record-error.ts';
 import { reopening } from './reopening.ts';
 import type { Station } from './station.ts';
-import { bornBuckets, touchedBuckets } from './touched-buckets.ts';
+import { touchedBuckets, tubsOf } from './touched-buckets.ts';
 import { withRoom } from './with-room.ts';
 
 interface Deps {
@@ -102,6 +102,7 @@ async function enqueue(station: Station, body: OperationBody, { opId, seen }: En
     opId,
     deviceSeq: operation.deviceSeq,
     operation,
+    tubs: tubsOf(operation),
     status: 'waiting',
     changeSeq: null,
     problem: null,
@@ -132,11 +133,12 @@ async function seenNow(station: Station, body: OperationBody): Promise<SeenByBuc
 /** Own operations are known too, but for those that the server refused. */
 async function withPending(outbox: Outbox, installId: string, seen: SeenByBucket): Promise<SeenByBucket> {
   const known = structuredClone(seen);
-  if (Object.keys(known).length === 0) return known;
-  for (const queued of await outbox.ops.where('status').anyOf('waiting', 'sent').toArray()) {
-    for (const id of [...touchedBuckets(queued.operation), ...bornBuckets(queued.operation)]) {
+  const queued = await outbox.ops.where('tubs').anyOf(Object.keys(known)).distinct().toArray();
+  for (const { status, tubs, deviceSeq } of queued) {
+    if (status !== 'waiting' && status !== 'sent') continue;
+    for (const id of tubs) {
       const ofBucket = known[id];
-      if (ofBucket !== undefined) ofBucket[installId] = Math.max(ofBucket[installId] ?? 0, queued.deviceSeq);
+      if (ofBucket !== undefined) ofBucket[installId] = Math.max(ofBucket[installId] ?? 0, deviceSeq);
     }
   }
   return known;

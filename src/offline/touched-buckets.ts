@@ -9,6 +9,11 @@ export function touchedBuckets(operation: OperationBody): string[] {
   return 'bucketId' in operation.body ? [operation.body.bucketId] : [];
 }
 
+/** Both: those that it touches and those that begin with it. */
+export function tubsOf(operation: OperationBody): string[] {
+  return [...new Set([...touchedBuckets(operation), ...bornBuckets(operation)])];
+}
+
 /** The buckets that begin with an operation. */
 export function bornBuckets(operation: OperationBody): string[] {
   if (operation.type === 'batch-mixed') return operation.body.filled.map((tub) => tub.bucketId);

@@ -8,18 +8,24 @@ import { seedWhenEmpty } from '#scripts/prepare-database.mjs';
 import { signIn } from '#server/auth/sign-in.ts';
 import { type Database, openDatabase } from '#server/db/connection.ts';
 import { HttpProblem, problemResponse } from '#server/http/http-problem.ts';
-import { applyPush } from '#server/sync/apply-push.ts';
+import { type PushStation, applyPush } from '#server/sync/apply-push.ts';
 import { pullChanges } from '#server/sync/pull-changes.ts';
 import { makeFreshDatabase } from '#tests/support/fresh-database.ts';
 import type { TestDatabase } from '#tests/support/postgres.ts';
 import { makeBrowser } from '#tests/support/station.ts';
 
-const real = { now: () => new Date(), randomId: uuidv7 };
+/** The time as the server has it, and as the device does. */
+export interface Clocks {
+  server: () => Date;
+  device: () => Date;
+}
+const now = () => new Date();
 
 /** The demo mixer's station and the real handlers on a database of its own, without HTTP between them. */
-export async function openDemoStation(): Promise<{
+export async function openDemoStation(clocks: Clocks = { server: now, device: now }): Promise<{
   station: Station;
   deps: SyncDeps;
+  db: Database;
   database: TestDatabase;
   close: () => Promise<void>;
 }> {
@@ -31,17 +37,18 @@ export async function openDemoStation(): Promise<{
   const [mixer] = demoSignIns;
   const { email, password } = mixer as (typeof demoSignIns)[number];
   const request = { email, password, installIds: [], newInstallId: uuidv7() };
-  const { response } = await signIn(db, request, undefined, real);
-  const station = await saveSignIn(response, makeBrowser(real.now()));
+  const { response } = await signIn(db, request, undefined, { now: clocks.server, randomId: uuidv7 });
+  const station = await saveSignIn(response, makeBrowser(clocks.device()));
   const close = async () => {
     await db.destroy();
     await database.drop();
   };
-  return { station, deps: { ...real, fetch: handlers(db, response.shop.id, response.station.id) }, database, close };
+  const fetch = handlers(db, { shopId: response.shop.id, stationId: response.station.id }, clocks.server);
+  return { station, deps: { now: clocks.device, randomId: uuidv7, fetch }, db, database, close };
 }
 
-function handlers(db: Database, shopId: string, stationId: string): typeof fetch {
-  const answer = answers(db, shopId, stationId);
+function handlers(...given: Parameters<typeof answers>): typeof fetch {
+  const answer = answers(...given);
   return (input, init) =>
     answer(input, init).catch((error: unknown) => {
       if (error instanceof HttpProblem) return problemResponse(error.problem, error.headers);
@@ -49,15 +56,15 @@ function handlers(db: Database, shopId: string, stationId: string): typeof fetch
     });
 }
 
-function answers(db: Database, shopId: string, stationId: string): typeof fetch {
+function answers(db: Database, station: PushStation, now: () => Date): typeof fetch {
   return async (input, init) => {
     const url = new URL(String(input), 'http://shop.example');
     if (url.pathname === '/api/sync/push') {
       const push = pushRequest.parse(JSON.parse(String(init?.body)));
-      return Response.json(await applyPush(db, { shopId, stationId }, push, real));
+      return Response.json(await applyPush(db, station, push, { now, randomId: uuidv7 }));
     }
     const cursor = url.searchParams.get('cursor') ?? '';
     const installId = url.searchParams.get('install') ?? undefined;
-    return Response.json(await pullChanges(db, shopId, { cursor, limit: 500, installId, now: real.now() }));
+    return Response.json(await pullChanges(db, station.shopId, { cursor, limit: 500, installId, now: now() }));
   };
 }
