@@ -1,3 +1,4 @@
+import os from 'node:os';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { sql } from 'kysely';
 import { v7 as uuid } from 'uuid';
@@ -39,8 +40,9 @@ async function push(baseUrl: string, station: BenchStation, ops: unknown[]): Pro
   return { ms: performance.now() - started, outcomes };
 }
 
-/** Pulls that were asked to come again later. */
+/** Pulls that were asked to come again later, or cut off. */
 let refusals = 0;
+let bytes = 0;
 
 async function pull(
   baseUrl: string,
@@ -51,15 +53,16 @@ async function pull(
   let [rows, at, more] = [0, cursor, true];
   while (more) {
     const query = new URLSearchParams({ cursor: at, limit: '2000', install: station.installId });
-    const response = await fetch(`${baseUrl}/api/sync/pull?${query}`, {
-      headers: { Cookie: `station=${station.cookie}` },
-    });
-    if (!response.ok) {
+    const headers = { Cookie: `station=${station.cookie}` };
+    const response = await fetch(`${baseUrl}/api/sync/pull?${query}`, { headers }).catch(() => undefined);
+    const text = response?.ok === true ? await response.text().catch(() => undefined) : undefined;
+    if (text === undefined) {
       refusals += 1;
-      await sleep(1000 * Number(response.headers.get('Retry-After') ?? 1));
+      await sleep(1000 * Number(response?.headers.get('Retry-After') ?? 1));
       continue;
     }
-    const page = (await response.json()) as { cursor: string; more: boolean; changes: unknown[] };
+    bytes += text.length;
+    const page = JSON.parse(text) as { cursor: string; more: boolean; changes: unknown[] };
     [rows, at, more] = [rows + page.changes.length, page.cursor, page.more];
   }
   return { ms: performance.now() - started, rows, cursor: at };
@@ -121,14 +124,14 @@ async function measure(baseUrl: string, db: Database, shopId: string): Promise<v
       0.95,
     ).toFixed(
       0,
-    )} ms, together ${((performance.now() - started) / 1000).toFixed(1)} s; ${rows} rows, asked to come again ${refusals} times`,
+    )} ms, together ${((performance.now() - started) / 1000).toFixed(1)} s; ${rows} rows, ${(bytes / 1e6).toFixed(0)} MB, asked to come again ${refusals} times`,
   );
 }
 
-async function measurePull(db: Database, shopId: string): Promise<void> {
+async function measurePull(db: Database, superuserUrl: string, shopId: string): Promise<void> {
   const buffers: number[] = [];
   for (const movements of [40_000, 1_000_000]) {
-    await fillMovements(db, shopId, movements);
+    await fillMovements(superuserUrl, shopId, movements);
     const cost = await explainPull(db, shopId, 10);
     buffers.push(cost.buffers);
     console.log(
@@ -142,6 +145,7 @@ async function measurePull(db: Database, shopId: string): Promise<void> {
 const cluster = await openTestCluster();
 try {
   const { ownerUrl, appUrl } = await cluster.makeDatabase();
+  const superuserUrl = Object.assign(new URL(cluster.clusterUrl), { pathname: new URL(ownerUrl).pathname }).href;
   await seedWhenEmpty({ ownerUrl, appUrl });
   await buildWhenStale();
   const server = await spawnServer({
@@ -156,9 +160,11 @@ try {
       shopId: string;
     }>`select shop_id from find_sign_in('mixer@siltlane.example.test')`.execute(db);
     const shopId = found.rows[0]?.shopId ?? '';
-    console.log(`Sync, ${STATIONS} stations of one shop, ${LOGS} logs each, Node ${process.version}`);
+    console.log(
+      `Sync, ${STATIONS} stations of one shop, ${LOGS} logs each, Node ${process.version}, ${os.availableParallelism()} cores, load before ${os.loadavg()[0]?.toFixed(1)}`,
+    );
     await measure(server.url, db, shopId);
-    await measurePull(db, shopId);
+    await measurePull(db, superuserUrl, shopId);
   } finally {
     await db.destroy();
     server.stop();

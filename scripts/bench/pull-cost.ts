@@ -1,25 +1,26 @@
-import { sql } from 'kysely';
 import pg from 'pg';
 import type { Database } from '#server/db/connection.ts';
 import { inShop } from '#server/db/in-shop.ts';
 import { pullChanges } from '#server/sync/pull-changes.ts';
 import { cursorAfter } from '#server/sync/pull-cursor.ts';
 
-/** Movements of one tub up to `count` in all, entered in bulk: the ledger of years. */
-export async function fillMovements(db: Database, shopId: string, count: number): Promise<void> {
-  await inShop(db, shopId, async (trx) => {
-    const { n } = await trx
-      .selectFrom('movements')
-      .select((eb) => eb.fn.countAll<number>().as('n'))
-      .where('shopId', '=', shopId)
-      .executeTakeFirstOrThrow();
-    await sql`
-      insert into movements (shop_id, op_id, n, bucket_id, kind, delta_mg)
-      select ${shopId}::uuid, m.op_id, 1000 + g, m.bucket_id, 'used', 0
-      from (select op_id, bucket_id from movements where shop_id = ${shopId} limit 1) m,
-        generate_series(${Number(n)}::int, ${count}::int) g`.execute(trx);
-  });
-  await sql`analyze movements`.execute(db).catch(() => undefined);
+/**
+ * Movements of one tub up to `count` in all, entered in bulk by a superuser without the checks of each row: the ledger of
+ * years.
+ */
+export async function fillMovements(superuserUrl: string, shopId: string, count: number): Promise<void> {
+  const client = new pg.Client({ connectionString: superuserUrl });
+  await client.connect();
+  await client.query('set session_replication_role = replica');
+  await client.query(
+    `insert into movements (shop_id, op_id, n, bucket_id, kind, delta_mg)
+     select $1::uuid, m.op_id, 1000 + g, m.bucket_id, 'used', 0
+     from (select op_id, bucket_id from movements where shop_id = $1 limit 1) m,
+       generate_series((select count(*)::int from movements where shop_id = $1), $2::int) g`,
+    [shopId, count],
+  );
+  await client.query('analyze movements');
+  await client.end();
 }
 
 interface PullCost {

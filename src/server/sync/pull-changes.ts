@@ -5,9 +5,13 @@ import { tableNames } from '#contract/rows.ts';
 import type { Database } from '#server/db/connection.ts';
 import { type ShopTransaction, inShop } from '#server/db/in-shop.ts';
 import { HttpProblem } from '#server/http/http-problem.ts';
+import type { PageStore, StoredPage } from './page-store.ts';
 import { type Cursor, cursorAfter, cursorAt, parseCursor } from './pull-cursor.ts';
 import { pullTables } from './pull-rows.ts';
 import { type ChangeKey, readChanges } from './read-changes.ts';
+
+/** Rows of a page that others may ask for again; a short one is read as fast as it is found. */
+const WORTH_KEEPING = 200;
 
 interface Request {
   cursor: string;
@@ -26,7 +30,7 @@ export async function pullChanges(db: Database, shopId: string, request: Request
  * writes the rows, and nothing reads them again on their way.
  * @throws HttpProblem 409 'must-refetch'
  */
-export function pullPage(db: Database, shopId: string, request: Request): Promise<string> {
+export function pullPage(db: Database, shopId: string, request: Request, store?: PageStore): Promise<string> {
   const cursor = parseCursor(request.cursor);
   return inShop(
     db,
@@ -40,9 +44,10 @@ export function pullPage(db: Database, shopId: string, request: Request): Promis
       if (cursor.seq > shop.seq || (cursor.epoch !== null && cursor.epoch !== shop.epoch)) {
         throw new HttpProblem(409, 'must-refetch', 'Load again', 'This device loads the shop again.');
       }
-      const found = await findKeys(trx, shopId, cursor, request.limit + 1);
-      const page = found.slice(0, request.limit);
-      const last = found.length > page.length ? page.at(-1) : undefined;
+      const key = [shopId, shop.epoch, shop.seq, request.cursor, request.limit].join(' ');
+      const page = store?.find(key) ?? (await readPage(trx, shopId, cursor, request.limit));
+      if (page.count >= WORTH_KEEPING) store?.keep(key, page);
+      const { last } = page;
       const seq = last === undefined ? shop.seq : last.seq - 1;
       const head = {
         protocol: PROTOCOL,
@@ -50,14 +55,22 @@ export function pullPage(db: Database, shopId: string, request: Request): Promis
         cursor: last === undefined ? cursorAfter(shop.epoch, shop.seq) : cursorAt(shop.epoch, last),
         seq,
         more: last !== undefined,
-        remaining: request.cursor === '' ? (await countRows(trx, shopId)) - page.length : null,
+        remaining: request.cursor === '' ? (await countRows(trx, shopId)) - page.count : null,
         own: await ownOperations(trx, shopId, request.installId, cursor.seq, seq),
       };
-      const changes = await readChanges(trx, shopId, page);
-      return `${JSON.stringify(head).slice(0, -1)},"changes":[${changes.join(',')}]}`;
+      return `${JSON.stringify(head).slice(0, -1)},"changes":[${page.changes}]}`;
     },
     { snapshot: true },
   );
+}
+
+/** `last` is where the next page goes on, when there is one. */
+async function readPage(trx: ShopTransaction, shopId: string, cursor: Cursor, limit: number): Promise<StoredPage> {
+  const found = await findKeys(trx, shopId, cursor, limit + 1);
+  const page = found.slice(0, limit);
+  const changes = await readChanges(trx, shopId, page);
+  const last = found.length > page.length ? page.at(-1) : undefined;
+  return { changes: changes.join(','), last, count: page.length };
 }
 
 /** The next changes of all tables in the order of (change sequence, table, id), from the indexes alone. */

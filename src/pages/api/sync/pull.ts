@@ -2,10 +2,13 @@ import type { APIRoute } from 'astro';
 import { pullCursor } from '#contract/pull.ts';
 import { database } from '#server/db/connection.ts';
 import { HttpProblem } from '#server/http/http-problem.ts';
+import { PageStore } from '#server/sync/page-store.ts';
 import { pullPage } from '#server/sync/pull-changes.ts';
 
 const LARGEST_PAGE = 2000;
 const UUID = /^[0-9a-f-]{36}$/;
+
+const pages = new PageStore();
 
 export const GET: APIRoute = async ({ locals, url }) => {
   const { station } = locals;
@@ -16,6 +19,6 @@ export const GET: APIRoute = async ({ locals, url }) => {
   const install = url.searchParams.get('install') ?? '';
   const installId = UUID.test(install) ? install : undefined;
   const request = { cursor: cursor.data, limit, installId, now: new Date() };
-  const page = await pullPage(database(), station.shopId, request);
+  const page = await pullPage(database(), station.shopId, request, pages);
   return new Response(page, { headers: { 'content-type': 'application/json' } });
 };
