@@ -120,6 +120,21 @@ export const bucketAdopted = z.strictObject({
 /** An entry that the server refused and a person lets go; `reason` is for whoever looks at it later. */
 export const entryDropped = z.strictObject({ opId: uuid, reason: shortText });
 
+/** An edited formula: it becomes a draft of its own, whatever others made of the same base. */
+export const formulaProposed = z.strictObject({
+  formulaId: uuid,
+  /** The revision that was edited. */
+  baseRevision: z.int().check(z.minimum(1)),
+  familyId: uuid,
+  /** A new name, when it is to have one. */
+  name: z.optional(shortText),
+  /** As written, each component once. */
+  parts: z
+    .array(z.strictObject({ componentId: uuid, parts: z.string().check(z.regex(/^(?=.*[1-9])\d{1,6}(\.\d{1,6})?$/)) }))
+    .check(z.minLength(1), z.maxLength(50)),
+  note: z.nullable(note),
+});
+
 /** Every operation a station may record, by type. `opVersion` of each is 1. */
 export const operationBodies = {
   'batch-mixed': batchMixed,
@@ -132,6 +147,7 @@ export const operationBodies = {
   'bucket-adopted': bucketAdopted,
   'shift-reported': shiftReported,
   'entry-dropped': entryDropped,
+  'formula-proposed': formulaProposed,
 } as const;
 
 export type OperationType = keyof typeof operationBodies;

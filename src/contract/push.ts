@@ -14,9 +14,12 @@ export const pushRequest = z.object({
 });
 export type PushRequest = z.infer<typeof pushRequest>;
 
+/** The number that a proposed formula was given. */
+const revision = z.optional(z.int());
+
 export const pushOutcome = z.discriminatedUnion('outcome', [
-  z.object({ opId: uuid, outcome: z.literal('accepted'), changeSeq: z.int() }),
-  z.object({ opId: uuid, outcome: z.literal('duplicate'), changeSeq: z.int() }),
+  z.object({ opId: uuid, outcome: z.literal('accepted'), changeSeq: z.int(), revision }),
+  z.object({ opId: uuid, outcome: z.literal('duplicate'), changeSeq: z.int(), revision }),
   z.object({ opId: uuid, outcome: z.literal('rejected'), problem }),
   z.object({ opId: uuid, outcome: z.literal('retry') }),
 ]);

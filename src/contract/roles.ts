@@ -18,6 +18,7 @@ export const operationRoles: Readonly<Record<OperationType, readonly Role[]>> = 
   'bucket-discarded': ink,
   'bucket-adopted': ink,
   'shift-reported': ink,
+  'formula-proposed': ink,
   /** Of these, whoever may record what is dropped. */
   'entry-dropped': press,
 };

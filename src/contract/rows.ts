@@ -99,6 +99,12 @@ export const rows = {
         familyId: uuid,
         lab,
         hiding: z.int(),
+        /** What it was edited from; not always the newest one at that time: then both are kept. */
+        baseRevision: z.optional(z.nullable(z.int())),
+        proposedBy: z.optional(z.nullable(uuid)),
+        /** As proposed; null: it keeps the formula's. */
+        name: z.optional(z.nullable(z.string())),
+        note: z.optional(z.nullable(z.string())),
         parts: z.array(z.object({ componentId: uuid, parts: z.string() })),
       }),
     ),

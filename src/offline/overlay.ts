@@ -43,6 +43,7 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
       return { ...shown, buckets: new Map(shown.buckets).set(operation.body.bucketId, adoptedTub(operation)) };
     case 'shift-reported':
     case 'entry-dropped':
+    case 'formula-proposed':
       return shown;
   }
 }

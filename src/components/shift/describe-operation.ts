@@ -21,6 +21,10 @@ export function describeOperation(operation: Operation, names: Names): { title: 
     const name = names.formulas.get(operation.body.formulaId)?.name ?? 'a batch';
     return { title: `Mixed ${name}`, massMg: operation.body.filled.reduce((sum, tub) => sum + tub.massMg, 0) };
   }
+  if (operation.type === 'formula-proposed') {
+    const name = names.formulas.get(operation.body.formulaId)?.name ?? 'a formula';
+    return { title: `Proposed a change of ${name}`, massMg: undefined };
+  }
   if (operation.type === 'batch-released') return { title: 'Released a batch', massMg: undefined };
   if (operation.type === 'shift-reported') return { title: 'Shift summary to the manager', massMg: undefined };
   if (operation.type === 'entry-dropped') return { title: 'Dropped a log', massMg: undefined };

@@ -9,6 +9,7 @@ import {
   applyRelocated,
   applyReturned,
 } from './apply-bucket.ts';
+import { applyFormulaProposed } from './apply-formula-proposed.ts';
 import { applyShiftReported } from './apply-shift-reported.ts';
 
 /** The effect of one operation on batches, buckets and movements. */
@@ -31,6 +32,8 @@ export function applyOperation(context: ApplyContext): void {
       return applyDiscarded(context, operation.body);
     case 'bucket-adopted':
       return adoptBucket(context, operation.body);
+    case 'formula-proposed':
+      return applyFormulaProposed(context, operation.body);
     case 'shift-reported':
       return applyShiftReported(context, operation.body);
     case 'entry-dropped':

@@ -162,7 +162,7 @@ function takeOne(
   if (known !== undefined) {
     if (!known.hash.equals(entry.hash))
       throw new RejectedError('op-id-reused', 'Another entry has this number already.');
-    return { opId, outcome: 'duplicate', changeSeq: known.changeSeq };
+    return { opId, outcome: 'duplicate', changeSeq: known.changeSeq, ...proposedBy(book, opId) };
   }
   if (revoked === true)
     throw new RejectedError('station-revoked', 'This device was revoked. A manager looks at what it recorded.');
@@ -189,7 +189,14 @@ function takeOne(
   applyOperation({ shopId, seq, operation, at, draft });
   book.accept(draft);
   earlier.accept(operation);
-  return { opId, outcome: 'accepted', changeSeq: seq };
+  return { opId, outcome: 'accepted', changeSeq: seq, ...proposedBy(book, opId) };
+}
+
+/** The number that a proposed formula was given, now or when it came first. */
+function proposedBy({ facts, writes }: PushBook, opId: string): { revision?: number } {
+  const written = writes.formulaRevisions.find((row) => row.opId === opId);
+  const revision = written?.revision ?? facts.operations.get(opId)?.revision;
+  return typeof revision === 'number' ? { revision } : {};
 }
 
 function problemOf(error: unknown, entry: Received): Problem {

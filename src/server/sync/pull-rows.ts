@@ -48,7 +48,8 @@ export const pullTables: Readonly<Record<TableName, { table: string; row: RawBui
     table: 'formulas',
     row: sql`json_build_object('code', t.code, 'name', t.name, 'revisions', (
       select coalesce(json_agg(json_build_object('revision', r.revision, 'state', r.state, 'familyId', r.family_id,
-        'lab', r.lab, 'hiding', r.hiding, 'parts', (
+        'lab', r.lab, 'hiding', r.hiding, 'baseRevision', r.base_revision, 'proposedBy', r.proposed_by, 'name', r.name,
+        'note', r.note, 'parts', (
           select coalesce(json_agg(json_build_object('componentId', p.component_id, 'parts', p.parts::text) order by p.position), '[]')
           from formula_parts p
           where p.shop_id = r.shop_id and p.formula_id = r.formula_id and p.revision = r.revision))

@@ -2,7 +2,7 @@ import type { Insertable } from 'kysely';
 import type { Composition } from '#domain/composition.ts';
 import type * as Tables from '#server/db/tables.ts';
 import type { NewJob } from '#server/jobs/queue-jobs.ts';
-import type { BucketRow, PushFacts } from './push-facts.ts';
+import { type BucketRow, type PushFacts, type Revision, revisionKey } from './push-facts.ts';
 
 /** Rows that a push adds, and what it changes of others. */
 export interface PushWrites {
@@ -13,6 +13,8 @@ export interface PushWrites {
   bucketParents: Insertable<Tables.BucketParents>[];
   movements: Insertable<Tables.Movements>[];
   lotMovements: Insertable<Tables.LotMovements>[];
+  formulaRevisions: Insertable<Tables.FormulaRevisions>[];
+  formulaParts: Insertable<Tables.FormulaParts>[];
   releases: { batchId: string; light: string; releasedBy: string }[];
   /** Work that becomes due when the push commits. */
   jobs: NewJob[];
@@ -27,6 +29,8 @@ export function noWrites(): PushWrites {
     bucketParents: [],
     movements: [],
     lotMovements: [],
+    formulaRevisions: [],
+    formulaParts: [],
     releases: [],
     jobs: [],
   };
@@ -53,6 +57,24 @@ export class PushDraft {
   tubsOfBatch(batchId: string): BucketRow[] {
     const ids = new Set([...this.facts.buckets.keys(), ...this.book.tubs.keys(), ...this.tubs.keys()]);
     return [...ids].flatMap((id) => this.findTub(id) ?? []).filter((tub) => tub.batchId === batchId);
+  }
+
+  /** Of a formula with what this push proposes; 0: there is no such formula. */
+  newestRevision(formulaId: string): number {
+    const numbers = this.revisionsWritten()
+      .filter((row) => row.formulaId === formulaId)
+      .map(({ revision }) => revision);
+    return Math.max(this.facts.newestRevisions.get(formulaId) ?? 0, ...numbers);
+  }
+
+  findRevision(key: string): Pick<Revision, 'lab' | 'hiding'> | undefined {
+    const written = this.revisionsWritten().find(({ formulaId, revision }) => revisionKey(formulaId, revision) === key);
+    if (written === undefined) return this.facts.revisions.get(key);
+    return { lab: typeof written.lab === 'string' ? JSON.parse(written.lab) : null, hiding: written.hiding };
+  }
+
+  private revisionsWritten() {
+    return [...this.book.writes.formulaRevisions, ...this.writes.formulaRevisions];
   }
 
   /** Empty when it is unknown. */

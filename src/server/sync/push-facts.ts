@@ -13,6 +13,8 @@ const OWNED = ['jobs', 'locations', 'containers', 'scales', 'families', 'people'
 export type OwnedTable = (typeof OWNED)[number] | 'components' | 'lots';
 
 export interface Revision {
+  formulaId: string;
+  revision: number;
   name: string;
   familyId: string;
   lab: unknown;
@@ -21,7 +23,8 @@ export interface Revision {
 
 /** What the shop has of the ids that a push names, as it stands under the shop's lock. */
 export interface PushFacts {
-  operations: ReadonlyMap<string, { hash: Buffer; changeSeq: number }>;
+  /** `revision`: of the formula that was proposed with it. */
+  operations: ReadonlyMap<string, { hash: Buffer; changeSeq: number; revision: number | null }>;
   /** Of this station only. */
   installs: ReadonlySet<string>;
   grants: ReadonlyMap<string, { role: string; personId: string }>;
@@ -31,6 +34,8 @@ export interface PushFacts {
   lots: ReadonlyMap<string, string | null>;
   /** By `formula/revision`. */
   revisions: ReadonlyMap<string, Revision>;
+  /** Of each formula that is named. */
+  newestRevisions: ReadonlyMap<string, number>;
   batches: ReadonlySet<string>;
   buckets: ReadonlyMap<string, BucketRow>;
   compositions: ReadonlyMap<string, Composition>;
@@ -48,10 +53,11 @@ export async function readFacts(
   named: PushReferences,
 ): Promise<PushFacts> {
   const operations = await trx
-    .selectFrom('operations')
-    .select(['opId', 'hash', 'changeSeq'])
-    .where('shopId', '=', shopId)
-    .where('opId', 'in', listOf(named.operations))
+    .selectFrom('operations as o')
+    .leftJoin('formulaRevisions as r', (join) => join.onRef('r.shopId', '=', 'o.shopId').onRef('r.opId', '=', 'o.opId'))
+    .select(['o.opId', 'o.hash', 'o.changeSeq', 'r.revision'])
+    .where('o.shopId', '=', shopId)
+    .where('o.opId', 'in', listOf(named.operations))
     .execute();
   const installs = await trx
     .selectFrom('installs')
@@ -69,6 +75,7 @@ export async function readFacts(
     .execute();
   const components = await readComponents(trx, shopId, named);
   const lots = await readLots(trx, shopId, named);
+  const revisions = await readRevisions(trx, shopId, named);
   const buckets = await readBuckets(trx, shopId, named);
   const batches = await readIds(trx, shopId, 'batches', named.batches);
   const missing = [...named.buckets, ...named.batches].filter(
@@ -88,7 +95,8 @@ export async function readFacts(
     ]),
     components,
     lots,
-    revisions: await readRevisions(trx, shopId, named),
+    revisions,
+    newestRevisions: newestOf(revisions),
     batches,
     buckets,
     compositions: await readCompositions(trx, shopId, named),
@@ -155,7 +163,14 @@ async function readRevisions(trx: ShopTransaction, shopId: string, { formulas }:
     .where('r.shopId', '=', shopId)
     .where('r.formulaId', 'in', [...formulas])
     .execute();
-  return new Map(rows.map(({ formulaId, revision, ...rest }) => [revisionKey(formulaId, revision), rest]));
+  return new Map(rows.map((row) => [revisionKey(row.formulaId, row.revision), row]));
+}
+
+function newestOf(revisions: ReadonlyMap<string, Revision>): Map<string, number> {
+  const newest = new Map<string, number>();
+  for (const { formulaId, revision } of revisions.values())
+    newest.set(formulaId, Math.max(newest.get(formulaId) ?? 0, revision));
+  return newest;
 }
 
 /** The tubs that are named, and those of the batches that are named: a release is of all of them. */

@@ -71,6 +71,11 @@ function addBody(found: Collected, { type, body }: Operation): void {
     add('containers', body.containerId);
     for (const share of body.composition) add('components', share.componentId);
   }
+  if (type === 'formula-proposed') {
+    add('formulas', body.formulaId);
+    add('families', body.familyId);
+    for (const part of body.parts) add('components', part.componentId);
+  }
   if (type !== 'batch-mixed') return;
   add('formulas', body.formulaId);
   for (const addition of body.additions) {

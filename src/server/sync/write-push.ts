@@ -10,6 +10,7 @@ export async function writePush(trx: ShopTransaction, shopId: string, seq: numbe
   const { writes } = book;
   await insertRows(trx, 'operations', writes.operations);
   await countInstalls(trx, shopId, writes);
+  await proposeRevisions(trx, shopId, seq, writes);
   await insertRows(trx, 'batches', writes.batches);
   await releaseBatches(trx, shopId, seq, writes);
   const tubs = [...book.tubs.values()];
@@ -46,6 +47,20 @@ async function countInstalls(trx: ShopTransaction, shopId: string, { operations 
       .where('id', '=', id)
       .execute();
   }
+}
+
+/** Stations hold a formula with all its revisions, so the formula changes with them. */
+async function proposeRevisions(trx: ShopTransaction, shopId: string, seq: number, writes: PushWrites): Promise<void> {
+  if (writes.formulaRevisions.length === 0) return;
+  await insertRows(trx, 'formulaRevisions', writes.formulaRevisions);
+  await insertRows(trx, 'formulaParts', writes.formulaParts);
+  const changed = writes.formulaRevisions.map(({ formulaId }) => formulaId);
+  await trx
+    .updateTable('formulas')
+    .set({ changeSeq: seq })
+    .where('shopId', '=', shopId)
+    .where('id', 'in', changed)
+    .execute();
 }
 
 /** Of several releases of one batch the same one stays, whichever came first. */
