@@ -18,6 +18,7 @@ const FIRST_SEED = 100_000;
 function soakParts(seeds, rounds) {
   const simulated = { SIMULATION_SEEDS: seeds, SIMULATION_FIRST: String(FIRST_SEED) };
   const killed = { KILL_ROUNDS: rounds };
+  const tabs = String(Math.round(Number(rounds) * 2.5));
   return [
     { what: `overlay model, ${seeds} runs`, project: 'sync', file: 'sync/overlay-model', env: { MODEL_RUNS: seeds } },
     {
@@ -28,6 +29,7 @@ function soakParts(seeds, rounds) {
       env: simulated,
     },
     { what: `server killed ${rounds} times`, project: 'e2e', file: 'e2e/killed-server', env: killed },
+    { what: `tabs killed ${tabs} times`, project: 'e2e', file: 'e2e/killed-tabs', env: { TAB_KILLS: tabs } },
     { what: `PostgreSQL killed ${rounds} times`, project: 'copies', file: 'copies/killed-postgres', env: killed },
   ];
 }

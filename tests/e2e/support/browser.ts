@@ -1,6 +1,7 @@
 import { type Browser, chromium } from 'playwright-core';
 
-const FLAGS = [
+/** What a browser needs to run here, quietly. */
+export const BROWSER_FLAGS = [
   '--no-sandbox',
   '--disable-gpu',
   '--disable-quic',
@@ -9,6 +10,8 @@ const FLAGS = [
   '--disable-component-update',
   '--disable-sync',
 ];
+
+export const chromiumProgram = () => process.env['CHROMIUM'] ?? '/usr/bin/chromium';
 
 /** Debian's Chromium; with `video` a y4m file plays as the camera. */
 export function launchBrowser(video?: string): Promise<Browser> {
@@ -21,7 +24,7 @@ export function launchBrowser(video?: string): Promise<Browser> {
           `--use-file-for-fake-video-capture=${video}`,
         ];
   return chromium.launch({
-    executablePath: process.env['CHROMIUM'] ?? '/usr/bin/chromium',
-    args: [...FLAGS, ...camera],
+    executablePath: chromiumProgram(),
+    args: [...BROWSER_FLAGS, ...camera],
   });
 }
