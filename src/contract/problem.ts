@@ -10,6 +10,9 @@ export const problem = z.object({
 });
 export type Problem = z.infer<typeof problem>;
 
+/** The code of a refused entry that somebody corrected or dropped already: its station lets it go. */
+export const SETTLED = 'settled-already';
+
 /** Builds a problem document; `code` is stable, `detail` says what is wrong and what to do. */
 export function makeProblem(status: number, code: string, title: string, detail: string): Problem {
   return { type: `/problems/${code}`, title, status, detail, code };

@@ -16,6 +16,8 @@ export interface QueuedOperation {
   problem: Problem | null;
   recordedAt: string;
   sentAt: string | null;
+  /** When it was first put on the wire; kept of drops only, which can be taken back until then. */
+  triedAt?: string;
 }
 
 export interface KeyRow {

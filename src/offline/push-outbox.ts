@@ -8,6 +8,7 @@ import {
 import { putKey } from './outbox-keys.ts';
 import type { Outbox, QueuedOperation } from './outbox.ts';
 import type { Station } from './station.ts';
+import { markTried, refusedAs } from './tray-sending.ts';
 import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
 
 /** Sends what waits, in the order of recording, until nothing waits, an exchange fails or the server settles nothing. */
@@ -15,7 +16,7 @@ export async function pushOutbox(station: Station, deps: SyncDeps): Promise<Sync
   // What the server cannot take yet waits for the next run, and holds up nothing behind it.
   const later = new Set<string>();
   for (;;) {
-    const batch = await nextBatch(station.outbox, later);
+    const batch = await markTried(station.outbox, await nextBatch(station.outbox, later), deps.now);
     if (batch.length === 0) return later.size === 0 ? { kind: 'done' } : LATER;
     const result = await pushBatch(station, batch, deps, later);
     if (result.kind !== 'done') return result;
@@ -85,7 +86,7 @@ async function settle(
       await outbox.ops.update(
         opId,
         result.outcome === 'rejected'
-          ? { status: 'rejected', problem: result.problem }
+          ? { status: refusedAs(result.problem), problem: result.problem }
           : { status: 'sent', changeSeq: result.changeSeq, sentAt: now.toISOString() },
       );
     }

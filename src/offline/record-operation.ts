@@ -18,14 +18,18 @@ import type { Station } from './station.ts';
 import { touchedBuckets, tubsOf } from './touched-buckets.ts';
 import { withRoom } from './with-room.ts';
 
-interface Deps {
+export interface RecordDeps {
   now: () => Date;
   randomId: () => string;
 }
-const here: Deps = { now: () => new Date(), randomId: uuidv7 };
+const here: RecordDeps = { now: () => new Date(), randomId: uuidv7 };
 
 /** Queues the operation; what is shown is the cache folded with the queue, so nothing else is written. @throws RecordError */
-export async function recordOperation(station: Station, body: OperationBody, deps: Deps = here): Promise<Operation> {
+export async function recordOperation(
+  station: Station,
+  body: OperationBody,
+  deps: RecordDeps = here,
+): Promise<Operation> {
   const { outbox } = station;
   const entry = await beginEntry(station, body, deps);
   return withRoom(station, deps.now(), () =>
@@ -38,7 +42,7 @@ export async function finishWeighing(
   station: Station,
   weighing: Weighing,
   body: OperationBody,
-  deps: Deps = here,
+  deps: RecordDeps = here,
 ): Promise<Operation> {
   const { outbox } = station;
   const entry = await beginEntry(station, body, deps);
@@ -64,17 +68,25 @@ export async function takeBucketCode(station: Station, now: Date = new Date()): 
 }
 
 /** What stays the same however often the entry is tried: its id, so that it is not written twice, and what was seen. */
-interface Entry {
+export interface Entry {
   opId: string;
+  /** Of a correction: what the refused entry had seen, for its figures were fixed then. */
   seen: SeenByBucket;
+  supersedes?: string;
 }
 
-async function beginEntry(station: Station, body: OperationBody, deps: Deps): Promise<Entry> {
+async function beginEntry(station: Station, body: OperationBody, deps: RecordDeps): Promise<Entry> {
   const seen = await reopening([station.cache], () => seenNow(station, body));
   return { opId: deps.randomId(), seen };
 }
 
-async function enqueue(station: Station, body: OperationBody, { opId, seen }: Entry, deps: Deps): Promise<Operation> {
+/** Inside the caller's transaction on `ops` and `keys`. @throws RecordError */
+export async function enqueue(
+  station: Station,
+  body: OperationBody,
+  { opId, seen, supersedes }: Entry,
+  deps: RecordDeps,
+): Promise<Operation> {
   const { outbox, person } = station;
   const queued = await outbox.ops.get(opId);
   if (queued !== undefined) return queued.operation;
@@ -94,7 +106,8 @@ async function enqueue(station: Station, body: OperationBody, { opId, seen }: En
     grantLapsed: hasLapsed(station.grant.expiresAt, clock, now),
     deviceTime: recordedAt,
     clock,
-    seen: await withPending(outbox, station.installId, seen),
+    seen: supersedes === undefined ? await withPending(outbox, seen) : seen,
+    ...(supersedes === undefined ? {} : { supersedes }),
     ...body,
   } satisfies Operation;
   requireRecordable(operation);
@@ -130,12 +143,13 @@ async function seenNow(station: Station, body: OperationBody): Promise<SeenByBuc
   return Object.fromEntries(ids.map((id, n) => [id, { ...rows[n]?.seen }]));
 }
 
-/** Own operations are known too, but for those that the server refused. */
-async function withPending(outbox: Outbox, installId: string, seen: SeenByBucket): Promise<SeenByBucket> {
+/** What this device holds is known too, but for what the server refused. */
+async function withPending(outbox: Outbox, seen: SeenByBucket): Promise<SeenByBucket> {
   const known = structuredClone(seen);
   const queued = await outbox.ops.where('tubs').anyOf(Object.keys(known)).distinct().toArray();
-  for (const { status, tubs, deviceSeq } of queued) {
+  for (const { status, tubs, operation } of queued) {
     if (status !== 'waiting' && status !== 'sent') continue;
+    const { installId, deviceSeq } = operation;
     for (const id of tubs) {
       const ofBucket = known[id];
       if (ofBucket !== undefined) ofBucket[installId] = Math.max(ofBucket[installId] ?? 0, deviceSeq);

@@ -1,14 +1,11 @@
 import { sql } from 'kysely';
 import type { Operation } from '#contract/operation.ts';
 import { type OperationType, operationBodies } from '#contract/operation-bodies.ts';
-import type { Problem } from '#contract/problem.ts';
+import { type Problem, SETTLED } from '#contract/problem.ts';
 import { type Role, mayRecord } from '#contract/roles.ts';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
 import { RejectedError } from './apply-context.ts';
 import type { PushStation, Received } from './apply-push.ts';
-
-/** The code of a refused entry that somebody settled already: its station lets it go. */
-const SETTLED = 'settled-already';
 
 interface RefusedRow {
   opId: string;
