@@ -17,6 +17,7 @@ async function stationWith(...tubs: ReturnType<typeof tubRow>[]): Promise<Statio
   const station = await makeStation();
   await station.cache.rows('buckets').bulkPut(tubs);
   await putKey(station.outbox, 'clock', { offsetMs: 90 * MINUTE, uncertaintyMs: 10, lastContact: START.toISOString() });
+  await station.cache.meta.put({ name: 'position', cursor: '', seq: 0, completeAt: START.toISOString() });
   return station;
 }
 

@@ -1,11 +1,14 @@
 import type { Row, TableName } from '#contract/rows.ts';
 import type { QueuedOperation } from './outbox.ts';
 import { type Shown, foldPending } from './overlay.ts';
+import { isPendingAt } from './pending.ts';
+import { reopening } from './reopening.ts';
 import type { Station } from './station.ts';
 
 /** True once the shop has been loaded whole onto this device. */
 export async function isLoaded(station: Station): Promise<boolean> {
-  return ((await station.cache.meta.get('position'))?.completeAt ?? null) !== null;
+  const position = await reading(station, () => station.cache.meta.get('position'));
+  return (position?.completeAt ?? null) !== null;
 }
 
 /** Every tub as it stands, pending operations folded in. */
@@ -22,15 +25,15 @@ export async function readBatches(station: Station): Promise<Row<'batches'>[]> {
 }
 
 export function readFormulas(station: Station): Promise<Row<'formulas'>[]> {
-  return station.cache.rows('formulas').toArray();
+  return reading(station, () => station.cache.rows('formulas').toArray());
 }
 
 export function readFormula(station: Station, id: string): Promise<Row<'formulas'> | undefined> {
-  return station.cache.rows('formulas').get(id);
+  return reading(station, () => station.cache.rows('formulas').get(id));
 }
 
 export function readRows<T extends TableName>(station: Station, table: T): Promise<Row<T>[]> {
-  return station.cache.rows(table).toArray();
+  return reading(station, () => station.cache.rows(table).toArray());
 }
 
 export interface Queue {
@@ -41,7 +44,7 @@ export interface Queue {
 
 /** The outbox in the order of recording. */
 export async function readQueue(station: Station, now: Date = new Date()): Promise<Queue> {
-  const all = await station.outbox.ops.orderBy('deviceSeq').toArray();
+  const all = await reading(station, () => station.outbox.ops.orderBy('deviceSeq').toArray());
   const today = now.toDateString();
   return {
     waiting: all.filter((entry) => entry.status === 'waiting'),
@@ -52,9 +55,16 @@ export async function readQueue(station: Station, now: Date = new Date()): Promi
   };
 }
 
+function reading<T>({ cache, outbox }: Station, read: () => PromiseLike<T>): Promise<T> {
+  return reopening([cache, outbox], read);
+}
+
+function readShown(station: Station): Promise<Shown> {
+  return reading(station, () => readOnce(station));
+}
+
 /** Cache and position first, then the outbox: an operation may then be missing from neither. */
-async function readShown(station: Station): Promise<Shown> {
-  const { cache, outbox } = station;
+async function readOnce({ cache, outbox }: Station): Promise<Shown> {
   const [buckets, batches, position] = await cache.transaction(
     'r',
     [cache.rows('buckets'), cache.rows('batches'), cache.meta],
@@ -63,10 +73,9 @@ async function readShown(station: Station): Promise<Shown> {
   );
   const seq = position?.seq ?? 0;
   const queued = await outbox.ops.orderBy('deviceSeq').toArray();
-  const pending = queued.filter(
-    (entry) => entry.status === 'waiting' || (entry.status === 'sent' && (entry.changeSeq ?? 0) > seq),
-  );
-  const cached = { buckets: byId(buckets), batches: byId(batches) };
+  const pending = queued.filter((entry) => isPendingAt(entry, seq));
+  // Rows without a position are the rest of what was freed: as of which change is not known.
+  const cached = position === undefined ? NOTHING : { buckets: byId(buckets), batches: byId(batches) };
   if (pending.length === 0) return cached;
   const [formulas, components, lots] = await Promise.all([
     cache.rows('formulas').toArray(),
@@ -79,6 +88,8 @@ async function readShown(station: Station): Promise<Shown> {
     { formulas: byId(formulas), components: byId(components), lots: byId(lots) },
   );
 }
+
+const NOTHING: Shown = { buckets: new Map(), batches: new Map() };
 
 function byId<T extends { id: string }>(rows: readonly T[]): Map<string, T> {
   return new Map(rows.map((row) => [row.id, row]));
