@@ -7,19 +7,19 @@ import { type Milligrams, type PartsPerBillion, WHOLE } from '#domain/mass.ts';
 import { gradeWhenTaken, takenFromTub } from '#domain/tub-effects.ts';
 import { noTrace } from '#domain/tub-trace.ts';
 import { correctedTime, foldTub } from './overlay-bucket.ts';
-import type { OverlayFacts, Shown } from './overlay.ts';
+import type { Changes, OverlayFacts, Shown } from './overlay.ts';
 
 type BatchMixed = Extract<Operation, { type: 'batch-mixed' }>;
 
 /** A mixed batch: its row, the leftovers it took from, and the labelled tubs it was filled into. */
-export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: OverlayFacts): Shown {
+export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: OverlayFacts): Changes {
   const { body } = operation;
-  const buckets = new Map(shown.buckets);
+  const taken = new Map<string, Row<'buckets'>>();
   for (const addition of body.additions)
-    if (addition.kind === 'bucket') takeFrom(buckets, shown.buckets, operation, addition);
-  for (const tub of body.filled) buckets.set(tub.bucketId, newTub(shown, operation, tub, facts));
+    if (addition.kind === 'bucket') takeFrom(taken, shown.buckets, operation, addition);
+  const filled = body.filled.map((tub) => newTub(shown, operation, tub, facts));
   const sum = (additions: readonly Addition[]) => additions.reduce((total, addition) => total + addition.actualMg, 0);
-  const batches = new Map(shown.batches).set(body.batchId, {
+  const batch: Row<'batches'> = {
     id: body.batchId,
     formulaId: body.formulaId,
     revision: body.revision,
@@ -33,23 +33,24 @@ export function foldBatchMixed(shown: Shown, operation: BatchMixed, facts: Overl
     mixedAt: correctedTime(operation),
     jobId: body.jobId,
     rush: body.rush,
-  });
-  return { buckets, batches };
+  };
+  return { buckets: [...taken.values(), ...filled], batches: [batch] };
 }
 
 /** A batch may take from one tub twice: what it took `before` is no longer shown. */
 function takeFrom(
-  buckets: Map<string, Row<'buckets'>>,
+  taken: Map<string, Row<'buckets'>>,
   before: ReadonlyMap<string, Row<'buckets'>>,
   operation: BatchMixed,
   addition: Addition & { kind: 'bucket' },
 ): void {
   const { bucketId, displayed } = addition;
-  const bucket = buckets.get(bucketId);
-  if (bucket === undefined) return;
-  const taken = (before.get(bucketId)?.balanceMg ?? bucket.balanceMg) - bucket.balanceMg;
-  const shownMg = displayed === undefined ? bucket.balanceMg : displayed.balanceMg - taken;
-  buckets.set(bucketId, foldTub(bucket, operation, takenFromTub(addition, shownMg)));
+  const first = before.get(bucketId);
+  if (first === undefined) return;
+  const bucket = taken.get(bucketId) ?? first;
+  const shownMg =
+    displayed === undefined ? bucket.balanceMg : displayed.balanceMg - (first.balanceMg - bucket.balanceMg);
+  taken.set(bucketId, foldTub(bucket, operation, takenFromTub(addition, shownMg)));
 }
 
 function newTub(shown: Shown, operation: BatchMixed, tub: Filled, facts: OverlayFacts): Row<'buckets'> {

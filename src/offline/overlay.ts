@@ -18,12 +18,27 @@ export interface OverlayFacts {
   lots: ReadonlyMap<string, Row<'lots'>>;
 }
 
-/** What is shown: the cache with the effect of every operation that it does not hold yet, in the order of recording. */
-export function foldPending(cached: Shown, operations: readonly Operation[], facts: OverlayFacts): Shown {
-  return operations.reduce((shown, operation) => foldOne(shown, operation, facts), cached);
+/** Rows as they are after one operation; the others stay. */
+export interface Changes {
+  buckets?: readonly Row<'buckets'>[];
+  batches?: readonly Row<'batches'>[];
 }
 
-function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown {
+/**
+ * What is shown: the cache with the effect of every operation that it does not hold yet, in the order of recording.
+ * Copied once: thousands may wait.
+ */
+export function foldPending(cached: Shown, operations: readonly Operation[], facts: OverlayFacts): Shown {
+  const shown = { buckets: new Map(cached.buckets), batches: new Map(cached.batches) };
+  for (const operation of operations) {
+    const { buckets = [], batches = [] } = changesOf(operation, shown, facts);
+    for (const bucket of buckets) shown.buckets.set(bucket.id, bucket);
+    for (const batch of batches) shown.batches.set(batch.id, batch);
+  }
+  return shown;
+}
+
+function changesOf(operation: Operation, shown: Shown, facts: OverlayFacts): Changes {
   switch (operation.type) {
     case 'batch-mixed':
       return foldBatchMixed(shown, operation, facts);
@@ -40,35 +55,31 @@ function foldOne(shown: Shown, operation: Operation, facts: OverlayFacts): Shown
     case 'bucket-discarded':
       return changeBucket(shown, operation, discardedTub(operation.body));
     case 'bucket-adopted':
-      return { ...shown, buckets: new Map(shown.buckets).set(operation.body.bucketId, adoptedTub(operation)) };
+      return { buckets: [adoptedTub(operation)] };
     case 'shift-reported':
     case 'entry-dropped':
     case 'formula-proposed':
-      return shown;
+      return {};
   }
 }
 
-function foldReleased(shown: Shown, operation: Operation & { type: 'batch-released' }): Shown {
+function foldReleased(shown: Shown, operation: Operation & { type: 'batch-released' }): Changes {
   const batch = shown.batches.get(operation.body.batchId);
-  if (batch === undefined) return shown;
+  if (batch === undefined) return {};
   const { light } = operation.body.release;
   // Of several releases the same one stays on every device and on the server.
   const stays = batch.state === 'released' && `${batch.releasedBy} ${batch.light}` >= `${operation.actorId} ${light}`;
   const released = { ...batch, state: 'released', light, releasedBy: operation.actorId } as const;
-  const batches = new Map(shown.batches).set(batch.id, stays ? batch : released);
-  const buckets = new Map(shown.buckets);
-  for (const bucket of shown.buckets.values()) {
-    if (bucket.batchId === batch.id)
-      buckets.set(bucket.id, { ...bucket, released: true, seen: withEntry(bucket.seen, operation) });
-  }
-  return { buckets, batches };
+  const buckets = [...shown.buckets.values()]
+    .filter((bucket) => bucket.batchId === batch.id)
+    .map((bucket) => ({ ...bucket, released: true, seen: withEntry(bucket.seen, operation) }));
+  return { buckets, batches: [stays ? batch : released] };
 }
 
 type OnOneBucket = Extract<Operation, { body: { bucketId: string } }>;
 
 /** A bucket that is not on this device stays unknown; the server knows it. */
-function changeBucket(shown: Shown, operation: OnOneBucket, effect: TubEffect): Shown {
+function changeBucket(shown: Shown, operation: OnOneBucket, effect: TubEffect): Changes {
   const bucket = shown.buckets.get(operation.body.bucketId);
-  if (bucket === undefined) return shown;
-  return { ...shown, buckets: new Map(shown.buckets).set(bucket.id, foldTub(bucket, operation, effect)) };
+  return bucket === undefined ? {} : { buckets: [foldTub(bucket, operation, effect)] };
 }
