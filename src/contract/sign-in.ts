@@ -2,6 +2,7 @@ import * as z from 'zod/mini';
 import { uuid } from './identifiers.ts';
 import { publicKeys } from './grant.ts';
 import { role } from './roles.ts';
+import { lostInstall } from './station-report.ts';
 
 export const signInRequest = z.object({
   email: z.string().check(z.minLength(3), z.maxLength(254)),
@@ -22,5 +23,7 @@ export const signInResponse = z.object({
   install: z.object({ id: uuid, codePrefix: z.string(), lastSeq: z.int() }),
   grant: z.string(),
   keys: publicKeys,
+  /** Set when the browser cleared what it kept here before. */
+  lost: z.optional(z.array(lostInstall)),
 });
 export type SignInResponse = z.infer<typeof signInResponse>;

@@ -1,5 +1,6 @@
 import * as z from 'zod/mini';
 import { publicKeys } from '#contract/grant.ts';
+import { lostInstall } from '#contract/station-report.ts';
 import type { Outbox } from './outbox.ts';
 
 const clock = z.object({ offsetMs: z.number(), uncertaintyMs: z.number(), lastContact: z.nullable(z.string()) });
@@ -13,6 +14,10 @@ const schemas = {
   grant: z.string(),
   publicKeys,
   clock,
+  /** Kept until a person has read it: when it was found, and by how many ms the clock went ahead. */
+  clockJump: z.object({ at: z.string(), jumpMs: z.number() }),
+  /** Kept until a person has read it: what the browser cleared before this sign-in. */
+  lost: z.array(lostInstall),
   shop: z.object({ id: z.string(), name: z.string(), locale: z.string() }),
   station: z.object({ id: z.string(), name: z.string() }),
 } as const;

@@ -2,6 +2,8 @@ import { problem } from '#contract/problem.ts';
 import { type PullResponse, pullResponse } from '#contract/pull.ts';
 import { type TableName, rows, tableNames } from '#contract/rows.ts';
 import type { Cache } from './cache.ts';
+import { measureClock } from './clock.ts';
+import { reportStation } from './report-station.ts';
 import type { Station } from './station.ts';
 import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
 
@@ -30,7 +32,8 @@ export async function pullChanges(
   for (;;) {
     const position = await station.cache.meta.get('position');
     const first = (position?.completeAt ?? null) === null;
-    const page = await fetchPage(station, pages.at(-1)?.cursor ?? position?.cursor ?? '', deps);
+    const report = pages.length === 0 ? await reportStation(station) : undefined;
+    const page = await fetchPage(station, pages.at(-1)?.cursor ?? position?.cursor ?? '', report, deps);
     if ('kind' in page) return page;
     if (page.refetch) {
       if (startedOver) return { kind: 'failed', problem: 'The shop cannot be loaded just now.', retryAfterMs: null };
@@ -56,8 +59,15 @@ export async function pullChanges(
 
 type Page = { refetch: false; answer: PullResponse; bytes: number } | { refetch: true };
 
-async function fetchPage(station: Station, cursor: string, deps: SyncDeps): Promise<Page | SyncResult> {
+async function fetchPage(
+  station: Station,
+  cursor: string,
+  report: string | undefined,
+  deps: SyncDeps,
+): Promise<Page | SyncResult> {
   const query = new URLSearchParams({ cursor, limit: String(PAGE), install: station.installId });
+  if (report !== undefined) query.set('report', report);
+  const askedAt = deps.now();
   const response = await deps.fetch(`/api/sync/pull?${query}`).catch(() => undefined);
   if (response === undefined) return { kind: 'offline' };
   if (response.status === 409 && (await codeOf(response)) === 'must-refetch') return { refetch: true };
@@ -68,6 +78,7 @@ async function fetchPage(station: Station, cursor: string, deps: SyncDeps): Prom
   const answer = pullResponse.safeParse(parseJson(text));
   if (!answer.success)
     return { kind: 'failed', problem: 'The answer was cut off. It tries again.', retryAfterMs: null };
+  if (report !== undefined) await measureClock(station.outbox, answer.data.serverTime, askedAt, deps.now());
   return { refetch: false, answer: answer.data, bytes: new TextEncoder().encode(text).length };
 }
 

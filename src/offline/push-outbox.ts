@@ -5,11 +5,12 @@ import {
   type PushOutcome,
   pushResponse,
 } from '#contract/push.ts';
-import { putKey } from './outbox-keys.ts';
+import { measureClock } from './clock.ts';
 import type { Outbox, QueuedOperation } from './outbox.ts';
 import type { Station } from './station.ts';
 import { markTried, refusedAs } from './tray-sending.ts';
 import { type SyncDeps, type SyncResult, refusalOf } from './sync-result.ts';
+import { withRoom } from './with-room.ts';
 
 /** Sends what waits, in the order of recording, until nothing waits, an exchange fails or the server settles nothing. */
 export async function pushOutbox(station: Station, deps: SyncDeps): Promise<SyncResult> {
@@ -49,7 +50,8 @@ async function pushBatch(
     return { kind: 'failed', problem: 'The answer was not for this device. It tries again.', retryAfterMs: null };
   }
   await measureClock(station.outbox, answer.data.serverTime, sentAt, deps.now());
-  const settled = await settle(station.outbox, batch, answer.data.results, deps.now());
+  const { results } = answer.data;
+  const settled = await withRoom(station, deps.now(), () => settle(station.outbox, batch, results, deps.now()));
   const known = later.size;
   const sent = new Set(batch.map(({ opId }) => opId));
   for (const { opId, outcome } of answer.data.results) if (outcome === 'retry' && sent.has(opId)) later.add(opId);
@@ -92,11 +94,4 @@ async function settle(
     }
     return settled;
   });
-}
-
-/** The server's clock lies inside the exchange: half of it is the uncertainty. */
-async function measureClock(outbox: Outbox, serverTime: string, sentAt: Date, now: Date): Promise<void> {
-  const half = (now.getTime() - sentAt.getTime()) / 2;
-  const offsetMs = Math.round(new Date(serverTime).getTime() - (sentAt.getTime() + half));
-  await putKey(outbox, 'clock', { offsetMs, uncertaintyMs: Math.ceil(Math.abs(half)), lastContact: serverTime });
 }

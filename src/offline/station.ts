@@ -1,6 +1,7 @@
 import type { Role } from '#contract/roles.ts';
 import type { SignInResponse } from '#contract/sign-in.ts';
 import { Cache } from './cache.ts';
+import { keepClock } from './clock.ts';
 import { hasLapsed } from './grant-age.ts';
 import { enterInstall, leaveInstall, readInstalls } from './installs.ts';
 import { findKey, putKey } from './outbox-keys.ts';
@@ -91,7 +92,8 @@ export async function saveSignIn(response: SignInResponse, browser: Browser = he
     await putKey(outbox, 'publicKeys', response.keys);
     await putKey(outbox, 'shop', shop);
     await putKey(outbox, 'station', { id: response.station.id, name: response.station.name });
-    await putKey(outbox, 'clock', { offsetMs, uncertaintyMs: 2000, lastContact: response.serverTime });
+    await keepClock(outbox, { offsetMs, uncertaintyMs: 2000, lastContact: response.serverTime });
+    if (response.lost !== undefined) await putKey(outbox, 'lost', response.lost);
   });
   const station = await openWith(outbox, { shopId: shop.id, installId: install.id }, browser.now());
   if (station === undefined) throw new SignInError('This browser lost what was just kept. Sign in again.');

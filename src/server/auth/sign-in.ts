@@ -4,6 +4,7 @@ import type { Database } from '#server/db/connection.ts';
 import { type ShopTransaction, inShop } from '#server/db/in-shop.ts';
 import { HttpProblem } from '#server/http/http-problem.ts';
 import { issueGrant, publicGrantKeys } from './grants.ts';
+import { findLostInstalls } from './lost-installs.ts';
 import { checkPassword } from './passwords.ts';
 import { type SignedIn, findPerson, startSession } from './sessions.ts';
 import { type Install, type KnownStation, enrolStation, requireInstall } from './stations.ts';
@@ -56,6 +57,8 @@ export async function signIn(
       })
       .execute();
     const response = await admit(trx, { person, station, install, isNew: kept === undefined }, deps);
+    const lost = await findLostInstalls(trx, { station, install, offered: request.installIds, person }, deps);
+    if (lost.length > 0) response.lost = lost;
     return { response, sessionCookie, stationCookie: enrolled?.cookie };
   });
 }

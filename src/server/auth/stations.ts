@@ -83,12 +83,14 @@ export async function requireInstall(
 ): Promise<Install> {
   const { shopId, stationId } = station;
   if (offered.length > 0) {
+    // One that was taken for lost and is here after all is not lost.
     const known = await trx
-      .selectFrom('installs')
-      .select(['id', 'codePrefix', 'lastSeq'])
+      .updateTable('installs')
+      .set({ lostAt: null })
       .where('shopId', '=', shopId)
       .where('stationId', '=', stationId)
       .where('id', 'in', [...offered])
+      .returning(['id', 'codePrefix', 'lastSeq'])
       .executeTakeFirst();
     if (known !== undefined) return known;
   }

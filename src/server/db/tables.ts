@@ -212,10 +212,13 @@ export interface Identities {
 }
 
 export interface Installs {
+  clockOffsetMs: number | null;
   codePrefix: string;
   id: string;
   lastSeq: Generated<number>;
+  lostAt: Date | null;
   pendingReported: number | null;
+  reportedAt: Date | null;
   shopId: string;
   stationId: string;
 }

@@ -1,7 +1,10 @@
 import type { APIRoute } from 'astro';
+import { v7 as randomId } from 'uuid';
 import { pullCursor } from '#contract/pull.ts';
+import { readReport } from '#contract/station-report.ts';
 import { database } from '#server/db/connection.ts';
 import { HttpProblem } from '#server/http/http-problem.ts';
+import { keepReport } from '#server/sync/keep-report.ts';
 import { PageStore } from '#server/sync/page-store.ts';
 import { pullPage } from '#server/sync/pull-changes.ts';
 
@@ -19,6 +22,9 @@ export const GET: APIRoute = async ({ locals, url }) => {
   const install = url.searchParams.get('install') ?? '';
   const installId = UUID.test(install) ? install : undefined;
   const request = { cursor: cursor.data, limit, installId, now: new Date() };
+  const report = readReport(url.searchParams.get('report'));
+  if (installId !== undefined && report !== undefined)
+    await keepReport(database(), station, installId, report, { now: () => new Date(), randomId });
   const page = await pullPage(database(), station.shopId, request, pages);
   return new Response(page, { headers: { 'content-type': 'application/json' } });
 };
