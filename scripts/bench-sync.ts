@@ -5,6 +5,7 @@ import { v7 as uuid } from 'uuid';
 import { type PushResponse, PROTOCOL } from '#contract/push.ts';
 import { type Database, openDatabase } from '#server/db/connection.ts';
 import { openTestCluster } from '#tests/support/postgres.ts';
+import { type Used, cpuReader, sayUsed } from './bench/cpu-seconds.ts';
 import { explainPull, fillMovements } from './bench/pull-cost.ts';
 import { quantile } from './bench/quantile.ts';
 import { type BenchStation, enrolStations } from './bench/sync-stations.ts';
@@ -62,8 +63,9 @@ async function pull(
       continue;
     }
     bytes += text.length;
-    const page = JSON.parse(text) as { cursor: string; more: boolean; changes: unknown[] };
-    [rows, at, more] = [rows + page.changes.length, page.cursor, page.more];
+    // Not parsed: stations do that on processors of their own.
+    const [, next = '', goesOn] = /"cursor":"([^"]*)","seq":\d+,"more":(true|false)/.exec(text.slice(0, 500)) ?? [];
+    [rows, at, more] = [rows + text.split('{"table":"').length - 1, next, goesOn === 'true'];
   }
   return { ms: performance.now() - started, rows, cursor: at };
 }
@@ -105,16 +107,27 @@ async function spread(baseUrl: string, stations: readonly BenchStation[]): Promi
   console.log(`  p95 at most 250 ms: ${verdict(p95 <= 250)}`);
 }
 
-async function measure(baseUrl: string, db: Database, shopId: string): Promise<void> {
+async function measure(baseUrl: string, db: Database, shopId: string, used: () => Used): Promise<void> {
+  let before = used();
+  const sayProcessor = () => {
+    const after = used();
+    console.log(sayUsed(before, after));
+    before = after;
+  };
   const stations = await enrolStations(db, shopId, STATIONS);
   for (const station of stations.slice(0, 3)) await push(baseUrl, station, station.record(4));
   const known = await pull(baseUrl, stations[0] as BenchStation, '');
+  before = used();
   await spread(baseUrl, stations);
+  sayProcessor();
   const work = stations.map((station): [BenchStation, unknown[]] => [station, station.record(LOGS)]);
+  before = used();
   const first = await together('Push all at once', baseUrl, work);
   console.log(`  at most 5 s together: ${verdict(first <= 5000)}`);
+  sayProcessor();
   const again = await together('The same pushed again', baseUrl, work);
   console.log(`  no more than the first: ${verdict(again <= first)} (${(again / first).toFixed(2)})`);
+  sayProcessor();
   const started = performance.now();
   const pulled = await Promise.all(stations.map((station) => pull(baseUrl, station, known.cursor)));
   const rows = pulled.reduce((sum, one) => sum + one.rows, 0);
@@ -126,6 +139,7 @@ async function measure(baseUrl: string, db: Database, shopId: string): Promise<v
       0,
     )} ms, together ${((performance.now() - started) / 1000).toFixed(1)} s; ${rows} rows, ${(bytes / 1e6).toFixed(0)} MB, asked to come again ${refusals} times`,
   );
+  sayProcessor();
 }
 
 async function measurePull(db: Database, superuserUrl: string, shopId: string): Promise<void> {
@@ -163,7 +177,7 @@ try {
     console.log(
       `Sync, ${STATIONS} stations of one shop, ${LOGS} logs each, Node ${process.version}, ${os.availableParallelism()} cores, load before ${os.loadavg()[0]?.toFixed(1)}`,
     );
-    await measure(server.url, db, shopId);
+    await measure(server.url, db, shopId, await cpuReader(server.pid, appUrl));
     await measurePull(db, superuserUrl, shopId);
   } finally {
     await db.destroy();

@@ -1,9 +1,10 @@
-import type { Selectable } from 'kysely';
+import { type Selectable, type SqlBool, sql } from 'kysely';
 import type { Composition } from '#domain/composition.ts';
 import type { PartsPerBillion } from '#domain/mass.ts';
 import type { ShopTransaction } from '#server/db/in-shop.ts';
 import type { Buckets, Components } from '#server/db/tables.ts';
 import type { PushReferences } from './push-references.ts';
+import { among, readIds } from './read-ids.ts';
 import { findRefused, releaseOf } from './refused-tubs.ts';
 
 export type BucketRow = Selectable<Buckets>;
@@ -57,27 +58,31 @@ export async function readFacts(
     .leftJoin('formulaRevisions as r', (join) => join.onRef('r.shopId', '=', 'o.shopId').onRef('r.opId', '=', 'o.opId'))
     .select(['o.opId', 'o.hash', 'o.changeSeq', 'r.revision'])
     .where('o.shopId', '=', shopId)
-    .where('o.opId', 'in', listOf(named.operations))
+    .where(among('o.opId', named.operations))
     .execute();
   const installs = await trx
     .selectFrom('installs')
     .select('id')
     .where('shopId', '=', shopId)
     .where('stationId', '=', stationId)
-    .where('id', 'in', listOf(named.installs))
+    .where(among('id', named.installs))
     .execute();
   const grants = await trx
     .selectFrom('grants')
     .select(['id', 'role', 'personId'])
     .where('shopId', '=', shopId)
     .where('stationId', '=', stationId)
-    .where('id', 'in', listOf(named.grants))
+    .where(among('id', named.grants))
     .execute();
   const components = await readComponents(trx, shopId, named);
   const lots = await readLots(trx, shopId, named);
   const revisions = await readRevisions(trx, shopId, named);
   const buckets = await readBuckets(trx, shopId, named);
-  const batches = await readIds(trx, shopId, 'batches', named.batches);
+  const ids = await readIds(trx, shopId, [
+    ...OWNED.map((table) => [table, named[table]] as const),
+    ['batches', named.batches] as const,
+  ]);
+  const batches = ids.get('batches') ?? new Set<string>();
   const missing = [...named.buckets, ...named.batches].filter(
     (id) => !buckets.has(id) && !batches.has(id) && !named.born.has(id),
   );
@@ -89,7 +94,7 @@ export async function readFacts(
     installs: new Set(installs.map(({ id }) => id)),
     grants: new Map(grants.map(({ id, ...rest }) => [id, rest])),
     owned: new Map<OwnedTable, ReadonlySet<string>>([
-      ...(await readOwned(trx, shopId, named)),
+      ...OWNED.map((table) => [table, ids.get(table) ?? new Set<string>()] as const),
       ['components', new Set(components.keys())],
       ['lots', new Set(lots.keys())],
     ]),
@@ -105,40 +110,13 @@ export async function readFacts(
   };
 }
 
-/** Never empty: a statement with no ids asks for one that nothing has. */
-function listOf(ids: ReadonlySet<string>): string[] {
-  return ids.size === 0 ? ['00000000-0000-0000-0000-000000000000'] : [...ids];
-}
-
-async function readOwned(trx: ShopTransaction, shopId: string, named: PushReferences) {
-  const found: [OwnedTable, ReadonlySet<string>][] = [];
-  for (const table of OWNED) found.push([table, await readIds(trx, shopId, table, named[table])]);
-  return found;
-}
-
-async function readIds(
-  trx: ShopTransaction,
-  shopId: string,
-  table: (typeof OWNED)[number] | 'batches',
-  ids: ReadonlySet<string>,
-): Promise<ReadonlySet<string>> {
-  if (ids.size === 0) return new Set();
-  const rows = await trx
-    .selectFrom(table)
-    .select('id')
-    .where('shopId', '=', shopId)
-    .where('id', 'in', [...ids])
-    .execute();
-  return new Set(rows.map(({ id }) => id));
-}
-
 async function readComponents(trx: ShopTransaction, shopId: string, { components }: PushReferences) {
   if (components.size === 0) return new Map();
   const rows = await trx
     .selectFrom('components')
     .select(['id', 'cureC', 'restrictions', 'hazards'])
     .where('shopId', '=', shopId)
-    .where('id', 'in', [...components])
+    .where(among('id', components))
     .execute();
   return new Map(rows.map(({ id, ...rest }) => [id, rest]));
 }
@@ -149,7 +127,7 @@ async function readLots(trx: ShopTransaction, shopId: string, { lots }: PushRefe
     .selectFrom('lots')
     .select(['id', 'useBy'])
     .where('shopId', '=', shopId)
-    .where('id', 'in', [...lots])
+    .where(among('id', lots))
     .execute();
   return new Map(rows.map(({ id, useBy }) => [id, useBy]));
 }
@@ -161,7 +139,7 @@ async function readRevisions(trx: ShopTransaction, shopId: string, { formulas }:
     .innerJoin('formulas as f', (join) => join.onRef('f.shopId', '=', 'r.shopId').onRef('f.id', '=', 'r.formulaId'))
     .select(['r.formulaId', 'r.revision', 'f.name', 'r.familyId', 'r.lab', 'r.hiding'])
     .where('r.shopId', '=', shopId)
-    .where('r.formulaId', 'in', [...formulas])
+    .where(among('r.formulaId', formulas))
     .execute();
   return new Map(rows.map((row) => [revisionKey(row.formulaId, row.revision), row]));
 }
@@ -180,7 +158,7 @@ async function readBuckets(trx: ShopTransaction, shopId: string, { buckets, batc
     .selectFrom('buckets')
     .selectAll()
     .where('shopId', '=', shopId)
-    .where((eb) => eb.or([eb('id', 'in', listOf(buckets)), eb('batchId', 'in', listOf(batches))]))
+    .where((eb) => eb.or([among('id', buckets), among('batchId', batches)]))
     .execute();
   return new Map(rows.map((row) => [row.id, row]));
 }
@@ -192,7 +170,7 @@ async function readCompositions(trx: ShopTransaction, shopId: string, { buckets 
     .selectFrom('bucketComposition')
     .select(['bucketId', 'componentId', 'ppb'])
     .where('shopId', '=', shopId)
-    .where('bucketId', 'in', [...buckets])
+    .where(among('bucketId', buckets))
     .execute();
   for (const { bucketId, componentId, ppb } of rows) {
     const shares = found.get(bucketId) ?? new Map<string, PartsPerBillion>();
@@ -207,7 +185,7 @@ async function readCodes(trx: ShopTransaction, shopId: string, { codes }: PushRe
     .selectFrom('buckets')
     .select('code')
     .where('shopId', '=', shopId)
-    .where('code', 'in', [...codes])
+    .where(sql<SqlBool>`code = any(${[...codes]}::text[])`)
     .execute();
   return new Set(rows.map(({ code }) => code));
 }
