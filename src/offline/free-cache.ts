@@ -5,6 +5,8 @@ import { isDiskFull } from './disk-error.ts';
 import { bornBuckets, touchedBuckets } from './touched-buckets.ts';
 import type { Station } from './station.ts';
 
+type Position = Cache['meta'] extends Table<infer M> ? M : never;
+
 interface Needed {
   buckets: (row: Row<'buckets'>) => boolean;
   formulas: (row: Row<'formulas'>) => boolean;
@@ -47,24 +49,42 @@ async function namedOnThisDevice({ outbox }: Station): Promise<{ buckets: Set<st
 
 /** Rows go and the next pull begins at the beginning, in one transaction; the rows that stay are as of the same change. */
 async function freeRows(cache: Cache, needed: Needed): Promise<void> {
-  const position = await cache.meta.get('position');
-  if (position === undefined || position.completeAt === null) return clearAll(cache);
-  const again = { ...position, cursor: '' };
+  const { meta } = cache;
   try {
-    await dropRows(cache, needed, () => cache.meta.put(again));
+    await dropRows(cache, needed, (position) => meta.put({ ...position, cursor: '' }));
   } catch (error) {
     if (!isDiskFull(error)) throw error;
-    // A full disk takes deletions only; without its position the shop counts as not loaded until the row fits.
-    await dropRows(cache, needed, () => cache.meta.clear());
-    await cache.meta.put(again).catch(() => clearAll(cache));
+    await freeWithoutRoom(cache, needed);
   }
 }
 
-async function dropRows(cache: Cache, needed: Needed, mark: () => PromiseLike<unknown>): Promise<void> {
+/** A full disk takes deletions only; without its position the shop counts as not loaded, until the position fits again. */
+async function freeWithoutRoom(cache: Cache, needed: Needed): Promise<void> {
   const { meta } = cache;
+  let before: Position | undefined;
+  await dropRows(cache, needed, async (position) => {
+    before = position;
+    await meta.clear();
+  });
+  if (before === undefined) return;
+  const again = { ...before, cursor: '' };
+  const putBack = async () => {
+    // A pull may have begun anew meanwhile.
+    if ((await meta.get('position')) === undefined) await meta.put(again);
+  };
+  await cache.transaction('rw', meta, putBack).catch(() => clearAll(cache));
+}
+
+/** A shop that is not loaded whole yet shows nothing, and goes whole. */
+async function dropRows(cache: Cache, needed: Needed, mark: (position: Position) => PromiseLike<unknown>) {
   const [buckets, formulas, batches] = [cache.rows('buckets'), cache.rows('formulas'), cache.rows('batches')];
-  await cache.transaction('rw', [meta, buckets, formulas, batches], async () => {
-    await mark();
+  await cache.transaction('rw', cache.tables, async () => {
+    const position = await cache.meta.get('position');
+    if (position === undefined || position.completeAt === null) {
+      for (const table of cache.tables) await table.clear();
+      return;
+    }
+    await mark(position);
     await batches.clear();
     await dropFrom(buckets, needed.buckets);
     await dropFrom(formulas, needed.formulas);

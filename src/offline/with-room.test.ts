@@ -115,6 +115,28 @@ test('a pull that was under way when rows were freed does not say that they are 
   expect((await station.cache.meta.get('position'))?.cursor).toBe('');
 });
 
+test('rows that a pull wrote while others were freed are not taken for older ones', async () => {
+  const { station, full } = await makeWorking();
+  const row = { ...full, balanceMg: 777_000 };
+  const server = answering({
+    '/api/sync/pull': () =>
+      pullAnswer({ seq: 30, cursor: 'cursor-30', changes: [{ table: 'buckets', id: full.id, row }] }),
+  });
+  fill(station, (store) => store === 'formulas');
+  const recorded = recordOperation(station, relocated(full.id), deps);
+  const pairs = new Set<string>();
+  for (let n = 0; n < 20; n++) {
+    await pullChanges(station, server.deps, () => {});
+    const [position, tub] = await station.cache.transaction('r', station.cache.tables, async () =>
+      Promise.all([station.cache.meta.get('position'), station.cache.rows('buckets').get(full.id)]),
+    );
+    if (tub !== undefined) pairs.add(`${position?.seq}: ${tub.balanceMg}`);
+  }
+  await recorded;
+  pairs.delete(`9: ${full.balanceMg}`);
+  expect([...pairs]).toEqual(['30: 777000']);
+});
+
 test('a device on which not even the position fits counts as not loaded, and shows nothing halfway', async () => {
   const { station, full } = await makeWorking();
   let removed = 0;
