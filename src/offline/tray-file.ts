@@ -34,14 +34,14 @@ const content = z.object({
 });
 type Entry = z.infer<typeof entry>;
 
-export interface EntriesFile {
+export interface SavedEntries {
   name: string;
   text: string;
   count: number;
 }
 
 /** Queue and tray of this device as JSON, each entry as it was recorded. */
-export async function exportEntries(station: Station, now: Date = new Date()): Promise<EntriesFile> {
+export async function exportEntries(station: Station, now: Date = new Date()): Promise<SavedEntries> {
   const all = await station.outbox.ops.where('status').anyOf('waiting', 'rejected').sortBy('deviceSeq');
   const exportedAt = now.toISOString();
   const { shop, station: device } = station;
