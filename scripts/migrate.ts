@@ -12,7 +12,9 @@ const migrationFolder = path.resolve(path.dirname(fileURLToPath(import.meta.url)
 async function migrateToLatest(connectionString: string) {
   const pool = new pg.Pool({ connectionString, max: 1 });
   const db = new Kysely<unknown>({ dialect: new PostgresDialect({ pool }) });
-  const migrator = new Migrator({ db, provider: new FileMigrationProvider({ fs, path, migrationFolder }) });
+  const provider = new FileMigrationProvider({ fs, path, migrationFolder });
+  // Pieces that are made side by side land in any order; a database may have the later number already.
+  const migrator = new Migrator({ db, provider, allowUnorderedMigrations: true });
   const { error, results } = await migrator.migrateToLatest();
   for (const { status, migrationName } of results ?? []) console.log(`migration ${migrationName}: ${status}`);
   if (error === undefined) await makeQueues({ connectionString, query: (text) => pool.query(text) }, roles.app);
