@@ -74,8 +74,9 @@ async function readOnce({ cache, outbox }: Station): Promise<Shown> {
   const seq = position?.seq ?? 0;
   const queued = await outbox.ops.orderBy('deviceSeq').toArray();
   const pending = queued.filter((entry) => isPendingAt(entry, seq));
-  // Rows without a position are the rest of what was freed: as of which change is not known.
-  const cached = position === undefined ? NOTHING : { buckets: byId(buckets), batches: byId(batches) };
+  // Until the shop is loaded whole, or again, a row may be newer than the position.
+  const isWhole = (position?.completeAt ?? null) !== null;
+  const cached = isWhole ? { buckets: byId(buckets), batches: byId(batches) } : NOTHING;
   if (pending.length === 0) return cached;
   const [formulas, components, lots] = await Promise.all([
     cache.rows('formulas').toArray(),
