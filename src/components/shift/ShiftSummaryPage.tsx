@@ -45,15 +45,13 @@ function Sheet({ shownSummary }: { shownSummary: ShownSummary }) {
           <ShiftSummaryTimes shownSummary={shownSummary} />
           <ShiftSummaryHead span={span} now={shown.now} />
           <ShiftSummaryFigures summary={summary} span={span} now={shown.now} />
-        </div>
-        <div className="stack gap-6">
-          <ShiftSummaryOpen open={summary.open} shown={shown} />
           <label className="field screen-only">
             <span>Note for the manager</span>
             <textarea rows={2} maxLength={ON_ONE_PAGE} value={note} onChange={(event) => setNote(event.target.value)} />
           </label>
           {note.trim() === '' ? null : <p className="paper-only paper-note">{note}</p>}
         </div>
+        <ShiftSummaryOpen open={summary.open} shown={shown} />
       </div>
       <ShiftSummarySend span={span} summary={summary} note={note} reports={shown.reports} />
     </>

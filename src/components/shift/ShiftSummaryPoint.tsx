@@ -9,7 +9,7 @@ export interface OpenItem {
 
 const FEW = 3;
 /** So many fit on one page with four others. */
-const ON_PAPER = 12;
+const ON_PAPER = 8;
 
 interface Props {
   title: string;
