@@ -8,6 +8,7 @@ import { openTestCluster } from '#tests/support/postgres.ts';
 import { type Used, cpuReader, sayUsed } from './bench/cpu-seconds.ts';
 import { explainPull, fillMovements } from './bench/pull-cost.ts';
 import { quantile } from './bench/quantile.ts';
+import { sayShopSize } from './bench/shop-size.ts';
 import { type BenchStation, enrolStations } from './bench/sync-stations.ts';
 import { buildWhenStale } from './build-when-stale.mjs';
 import { makeGrantKeys } from './grant-keys.mjs';
@@ -178,6 +179,7 @@ try {
       `Sync, ${STATIONS} stations of one shop, ${LOGS} logs each, Node ${process.version}, ${os.availableParallelism()} cores, load before ${os.loadavg()[0]?.toFixed(1)}`,
     );
     await measure(server.url, db, shopId, await cpuReader(server.pid, appUrl));
+    await sayShopSize(superuserUrl);
     await measurePull(db, superuserUrl, shopId);
   } finally {
     await db.destroy();
