@@ -4,6 +4,7 @@ import { SyncChip } from '#components/ui/SyncChip.tsx';
 import { Top } from '#components/ui/Top.tsx';
 import { useQueue } from '#components/ui/use-queue.ts';
 import { CorrectSheet } from './CorrectSheet.tsx';
+import { DeviceNote } from './DeviceNote.tsx';
 import { DropSheet } from './DropSheet.tsx';
 import { EntriesFile } from './EntriesFile.tsx';
 import { Person } from './Person.tsx';
@@ -47,6 +48,7 @@ function Shift() {
         <div className="stack gap-4">
           <SendNow waiting={queue.waiting.length} decide={queue.rejected.length} />
           <Tray queue={queue} names={names} note={note} onDecide={open} />
+          <DeviceNote />
         </div>
         <div className="stack gap-6">
           <QueueList title="Waits on this device" empty="Nothing waits." entries={queue.waiting} />

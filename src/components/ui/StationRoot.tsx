@@ -4,6 +4,7 @@ import { type SyncHandle, startSync } from '#offline/sync-loop.ts';
 import { keepCodeReader } from './code-reader.ts';
 import { FirstLoad } from './FirstLoad.tsx';
 import { LapsedNote } from './LapsedNote.tsx';
+import { LossNote } from './LossNote.tsx';
 import { Nav, type Area } from './Nav.tsx';
 import { StationContext } from './station-context.ts';
 import { UpdatePrompt } from './UpdatePrompt.tsx';
@@ -26,6 +27,7 @@ export function StationRoot({ area, flow = false, className = '', children }: Pr
       <div className={`frame ${flow ? 'flow' : ''} ${className}`}>
         <main>
           {open.station.grant.lapsed ? <LapsedNote /> : null}
+          <LossNote />
           <FirstLoad>{children}</FirstLoad>
           <UpdatePrompt />
         </main>
