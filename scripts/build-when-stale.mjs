@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import fs from 'node:fs';
 import path from 'node:path';
+import { keepAssets } from './keep-assets.mjs';
 import { withLock } from './lock.mjs';
 import { dataFolder, distFolder, packageFile, projectFolder } from './paths.mjs';
 import { precompress } from './precompress.mjs';
@@ -24,6 +25,7 @@ export async function buildWhenStale() {
     const env = { ...astroEnv, NODE_ENV: 'production' };
     await runStep('The build', [packageFile('astro/astro.js'), 'build'], { env, quiet: true });
     await precompress(path.join(distFolder, 'client'));
+    keepAssets(path.join(distFolder, 'client', '_astro'), path.join(dataFolder, 'builds'));
     fs.writeFileSync(stampFile, stamp);
   });
 }
