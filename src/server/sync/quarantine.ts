@@ -15,8 +15,8 @@ export async function quarantine(
     opId: entry.opId,
     hash: entry.hash,
     stationId,
-    raw: JSON.stringify(entry.raw),
-    problem: JSON.stringify(problem),
+    raw: wholeText(entry.raw),
+    problem: JSON.stringify(problem).replaceAll(UNSTORABLE, '\\ufffd'),
     receivedAt: now,
   }));
   await trx
@@ -35,4 +35,13 @@ export async function quarantine(
       detail: JSON.stringify({ opId: entry.opId, station: stationId }),
     }));
   if (audited.length > 0) await trx.insertInto('audit').values(audited).execute();
+}
+
+/** Escapes that jsonb does not take: NUL, and halves of surrogate pairs. */
+const UNSTORABLE = /\\u0000|\\ud[89a-f][0-9a-f]{2}/gi;
+
+/** JSON text for jsonb; of an entry that jsonb cannot hold, its text as one string, so that nothing of it is lost. */
+function wholeText(raw: unknown): string {
+  const text = JSON.stringify(raw);
+  return text.search(UNSTORABLE) < 0 ? text : JSON.stringify(text);
 }
