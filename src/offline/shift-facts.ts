@@ -5,7 +5,7 @@ import type { Discard, ShiftFacts } from '#domain/shift-summary.ts';
 import { findKey } from './outbox-keys.ts';
 import type { QueuedOperation } from './outbox.ts';
 import { correctedTime } from './overlay-bucket.ts';
-import { readBatches, readShelf } from './shown.ts';
+import { readShown } from './shown.ts';
 import type { Station } from './station.ts';
 
 export interface ShownShift {
@@ -20,20 +20,20 @@ export interface ShownShift {
 
 /** All that a shift summary is reckoned from, as this device shows it now. */
 export async function readShift(station: Station, deviceNow: Date = new Date()): Promise<ShownShift> {
-  const [batches, buckets] = [await readBatches(station), await readShelf(station)];
+  const { batches, buckets } = await readShown(station);
   const queued = await station.outbox.ops.orderBy('deviceSeq').toArray();
   const offsetMs = (await findKey(station.outbox, 'clock'))?.offsetMs ?? 0;
   const facts = {
-    batches: batches.map(asShiftBatch),
-    tubs: buckets,
+    batches: [...batches.values()].map(asShiftBatch),
+    tubs: [...buckets.values()],
     discards: queued.flatMap(asDiscard),
     waiting: queued.filter(({ status, operation }) => status === 'waiting' && !isReport(operation)).length,
     refused: queued.filter(({ status }) => status === 'rejected').length,
   };
   return {
     facts,
-    batches: byId(batches),
-    buckets: byId(buckets),
+    batches,
+    buckets,
     reports: queued.filter(({ operation }) => isReport(operation)),
     now: new Date(deviceNow.getTime() + offsetMs),
   };
@@ -58,8 +58,4 @@ function asShiftBatch({ id, mixedAt, actualMg, reusedMg, state }: Row<'batches'>
 function asDiscard({ operation, status }: QueuedOperation): Discard[] {
   if (operation.type !== 'bucket-discarded' || (status !== 'waiting' && status !== 'sent')) return [];
   return [{ atMs: Date.parse(correctedTime(operation)), shownMg: operation.body.displayedMg }];
-}
-
-function byId<T extends { id: string }>(rows: readonly T[]): Map<string, T> {
-  return new Map(rows.map((row) => [row.id, row]));
 }

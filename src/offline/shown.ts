@@ -59,7 +59,8 @@ function reading<T>({ cache, outbox }: Station, read: () => PromiseLike<T>): Pro
   return reopening([cache, outbox], read);
 }
 
-function readShown(station: Station): Promise<Shown> {
+/** Tubs and batches of one moment, pending operations folded in. */
+export function readShown(station: Station): Promise<Shown> {
   return reading(station, () => readOnce(station));
 }
 
