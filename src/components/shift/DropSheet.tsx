@@ -43,14 +43,14 @@ export function DropSheet({ entry: { operation }, names, onClose, onDone }: Shee
         <p className="g g-warn">
           <span>What it says then counts nowhere. If the ink moved, correct it instead.</span>
         </p>
-        <div className="card">
-          <EntryWords operation={operation} names={names} />
-        </div>
-        <Choices label="Reason" options={REASONS} value={reason} onChoose={setReason} />
+        <Choices label="Reason" options={REASONS} value={reason} onChoose={setReason} className="pair" />
         <label className="field">
           <span>{reason === 'Other' ? 'What happened?' : 'Note, if it helps'}</span>
           <input value={note} autoComplete="off" maxLength={160} onChange={(event) => setNote(event.target.value)} />
         </label>
+        <div className="card">
+          <EntryWords operation={operation} names={names} />
+        </div>
       </div>
       <div className="dock stack">
         <Alert text={decision.problem} />
