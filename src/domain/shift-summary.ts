@@ -43,7 +43,7 @@ export interface OpenPoints {
   waiting: number;
   /** Logs that the server did not accept. */
   refused: number;
-  /** Tubs of which the books and the scale may disagree. */
+  /** Tubs of which the books are in doubt, gone by one record and used by another among them. */
   recounts: string[];
   /** Batches that nobody released and that are still in a tub. */
   unreleased: string[];
@@ -82,14 +82,14 @@ export function summariseShift(span: ShiftSpan, facts: ShiftFacts): ShiftSummary
 }
 
 function openPoints({ batches, tubs, waiting, refused }: ShiftFacts): OpenPoints {
-  const kept = tubs.filter(({ state }) => state !== 'discarded');
-  const inTubs = new Set(kept.flatMap(({ state, batchId }) => (state === 'empty' || batchId === null ? [] : batchId)));
+  const full = tubs.filter(({ state }) => state !== 'discarded' && state !== 'empty');
+  const inTubs = new Set(full.map(({ batchId }) => batchId));
   return {
     waiting: requireCount(waiting),
     refused: requireCount(refused),
-    recounts: kept.filter(({ needsRecount }) => needsRecount).map(({ id }) => id),
+    recounts: tubs.filter(({ needsRecount }) => needsRecount).map(({ id }) => id),
     unreleased: batches.filter(({ id, released }) => !released && inTubs.has(id)).map(({ id }) => id),
-    atPress: kept.filter(({ state }) => state === 'at-press').map(({ id }) => id),
+    atPress: full.filter(({ state }) => state === 'at-press').map(({ id }) => id),
   };
 }
 

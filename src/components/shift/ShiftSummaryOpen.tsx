@@ -26,7 +26,7 @@ export function ShiftSummaryOpen({ open, shown }: { open: OpenPoints; shown: Sho
   const count = (name: string) => ({ id: name, name, detail: '', href: '/shift' });
   const points = [
     { title: 'Not accepted', glyph: 'g-stop', count: open.refused, items: [count('Decide on Shift')] },
-    { title: 'Two records disagree, re-weigh', glyph: 'g-two', items: open.recounts.flatMap(tub) },
+    { title: 'Weigh again', glyph: 'g-two', items: open.recounts.flatMap(tub) },
     { title: 'Not released', glyph: 'g-warn', items: open.unreleased.flatMap(batch) },
     { title: 'At a press', glyph: 'g-return', items: open.atPress.flatMap(tub) },
     { title: 'Waits to be sent', glyph: 'g-device', count: open.waiting, items: [count('See what waits')] },
