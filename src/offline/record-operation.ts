@@ -16,6 +16,7 @@ import { RecordError } from './record-error.ts';
 import { reopening } from './reopening.ts';
 import type { Station } from './station.ts';
 import { touchedBuckets, tubsOf } from './touched-buckets.ts';
+import { requireState } from './weighings.ts';
 import { withRoom } from './with-room.ts';
 
 export interface RecordDeps {
@@ -50,8 +51,7 @@ export async function finishWeighing(
     outbox.transaction('rw', outbox.ops, outbox.keys, outbox.weighings, async () => {
       const queued = await outbox.ops.get(entry.opId);
       if (queued !== undefined) return queued.operation;
-      if ((await outbox.weighings.get(weighing.id)) === undefined)
-        throw new RecordError('This batch is finished already. Open the Bench.');
+      requireState(await outbox.weighings.get(weighing.id), weighing);
       await outbox.weighings.delete(weighing.id);
       return enqueue(station, body, entry, deps);
     }),

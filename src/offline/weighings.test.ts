@@ -54,3 +54,27 @@ test('a weighing that does not fit its shape is not saved', async () => {
   await expect(saveWeighing(station, wrong)).rejects.toThrow('batchMg');
   expect(await listWeighings(station)).toEqual([]);
 });
+
+test('two tabs that log the same step: the second is told, and the first one’s step stands', async () => {
+  const station = await makeStation();
+  const shown = weighingAt('2026-11-30T08:05:00Z');
+  await saveWeighing(station, shown);
+  const first = { ...shown, batchMg: 860_000 as Milligrams, updatedAt: '2026-11-30T08:06:00Z' };
+  const second = { ...shown, batchMg: 870_000 as Milligrams, updatedAt: '2026-11-30T08:07:00Z' };
+  await saveWeighing(station, first, shown);
+  await expect(saveWeighing(station, second, shown)).rejects.toThrow('another tab of this device');
+  expect(await findWeighing(station, shown.id)).toEqual(first);
+  await removeWeighing(station, shown.id);
+  await expect(saveWeighing(station, second, first)).rejects.toThrow('finished already');
+  expect(await listWeighings(station)).toEqual([]);
+});
+
+test('a step whose answer was lost and that is written again is no step of another tab', async () => {
+  const station = await makeStation();
+  const shown = weighingAt('2026-11-30T08:05:00Z');
+  await saveWeighing(station, shown);
+  const next = { ...shown, updatedAt: '2026-11-30T08:06:00Z' };
+  await saveWeighing(station, next, shown);
+  await saveWeighing(station, next, shown);
+  expect(await findWeighing(station, shown.id)).toEqual(next);
+});

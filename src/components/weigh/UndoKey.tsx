@@ -23,7 +23,9 @@ export function UndoKey({ weighing, facts }: { weighing: Weighing; facts: WeighF
     now: new Date(),
   };
   const undo = () =>
-    saveWeighing(station, undoAddition(weighing, target)).catch((error: unknown) => setUnsaved(whyUnsaved(error)));
+    saveWeighing(station, undoAddition(weighing, target), weighing).catch((error: unknown) =>
+      setUnsaved(whyUnsaved(error)),
+    );
   if (unsaved !== undefined) return <Unsaved why={unsaved} />;
   return (
     <button

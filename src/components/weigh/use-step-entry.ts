@@ -62,7 +62,7 @@ export function useStepEntry(weighing: Weighing, facts: WeighFacts): StepEntry {
       },
     );
     try {
-      await saveWeighing(station, next);
+      await saveWeighing(station, next, weighing);
       navigator.vibrate?.(60);
     } catch (error) {
       setLogging(false);
