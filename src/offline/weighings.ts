@@ -17,6 +17,7 @@ export async function saveWeighing(
 ): Promise<void> {
   const whole = weighingSchema.parse(weighing) as Weighing;
   const { weighings } = station.outbox;
+  savedHere.set(whole.id, whole.updatedAt);
   await withRoom(station, now, () =>
     station.outbox.transaction('rw', weighings, async () => {
       const stored = await weighings.get(whole.id);
@@ -26,6 +27,14 @@ export async function saveWeighing(
       await weighings.put(whole);
     }),
   );
+}
+
+/** Of each batch the state that this tab saved last. */
+const savedHere = new Map<string, string>();
+
+/** True when this tab itself brought the batch to this state. */
+export function wasSavedHere({ id, updatedAt }: Weighing): boolean {
+  return savedHere.get(id) === updatedAt;
 }
 
 /** Two tabs may show one batch: who is behind looks first. @throws RecordError */
