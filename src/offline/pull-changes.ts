@@ -131,10 +131,10 @@ function rowOf(name: TableName, row: unknown): unknown {
 
 /**
  * Another state of the server: rows are pulled anew, and what was sent waits again until the rows list it as own or the
- * push answers `duplicate`, so that a restored database gets back what it lost.
+ * push answers `duplicate`, or refuses it as before, so that a restored database gets back what it lost.
  */
 async function startOver({ cache, outbox }: Station): Promise<void> {
-  await outbox.ops.where('status').equals('sent').modify({ status: 'waiting', changeSeq: null });
+  await outbox.ops.where('status').anyOf('sent', 'rejected').modify({ status: 'waiting', changeSeq: null, problem: null });
   await clearCache(cache);
 }
 

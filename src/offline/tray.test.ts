@@ -3,10 +3,11 @@ import { expect, test } from 'vitest';
 import { SETTLED, makeProblem } from '#contract/problem.ts';
 import { LARGEST_MASS } from '#contract/identifiers.ts';
 import type { Milligrams } from '#domain/mass.ts';
-import { accepted, answering, pushAnswer } from '#tests/support/fake-server.ts';
+import { accepted, answering, pullAnswer, pushAnswer } from '#tests/support/fake-server.ts';
 import { relocated, returned } from '#tests/support/operations.ts';
 import { tubRow } from '#tests/support/rows.ts';
 import { START, makeStation } from '#tests/support/station.ts';
+import { pullChanges } from './pull-changes.ts';
 import { pushOutbox } from './push-outbox.ts';
 import { RecordError } from './record-error.ts';
 import { recordOperation } from './record-operation.ts';
@@ -146,4 +147,15 @@ test('an entry that was settled elsewhere is let go; any other refusal waits for
     'dropped',
     'rejected',
   ]);
+});
+
+test('a server of another state is asked again about what it refused: it may have lost that it did', async () => {
+  const station = await makeStation();
+  const first = await refusedOn(station);
+  const again = makeProblem(409, 'must-refetch', 'Load again', 'This device loads the shop again.');
+  const server = answering({
+    '/api/sync/pull': (_, n) => (n === 0 ? Response.json(again, { status: 409 }) : pullAnswer()),
+  });
+  await pullChanges(station, server.deps, () => {});
+  expect(await statusOf(station, first.opId)).toBe('waiting');
 });
