@@ -134,7 +134,10 @@ function rowOf(name: TableName, row: unknown): unknown {
  * push answers `duplicate`, or refuses it as before, so that a restored database gets back what it lost.
  */
 async function startOver({ cache, outbox }: Station): Promise<void> {
-  await outbox.ops.where('status').anyOf('sent', 'rejected').modify({ status: 'waiting', changeSeq: null, problem: null });
+  await outbox.ops
+    .where('status')
+    .anyOf('sent', 'rejected')
+    .modify({ status: 'waiting', changeSeq: null, problem: null });
   await clearCache(cache);
 }
 
