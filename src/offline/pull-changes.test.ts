@@ -152,25 +152,3 @@ test.each([
   expect(await readShelf(station)).toEqual([tub]);
   expect(await station.cache.meta.get('position')).toEqual(position);
 });
-
-test('a revoked station forgets the shop at its next contact, and keeps what was recorded on it', async () => {
-  const station = await makeStation();
-  await station.cache.rows('buckets').put(tubRow());
-  await station.cache.meta.put({ name: 'position', cursor: 'c7', seq: 7, completeAt: START.toISOString() });
-  await recordOperation(station, relocated(uuidv7()));
-  const problem = makeProblem(403, 'station-revoked', 'Station revoked', 'This device was revoked. Ask a manager.');
-  const refuse = () => Response.json(problem, { status: 403, headers: { 'content-type': 'application/problem+json' } });
-  const result = await pullChanges(station, answering({ [PULL]: refuse }).deps, ignore);
-  expect(result).toEqual({ kind: 'refused', problem: 'This device was revoked. Ask a manager.' });
-  expect(await station.cache.rows('buckets').count()).toBe(0);
-  expect(await isLoaded(station)).toBe(false);
-  expect(await station.outbox.ops.count()).toBe(1);
-});
-
-test('another refusal leaves the rows where they are', async () => {
-  const station = await makeStation();
-  await station.cache.rows('buckets').put(tubRow());
-  const refuse = () => Response.json(makeProblem(403, 'other', 'No', 'Not now.'), { status: 403 });
-  await pullChanges(station, answering({ [PULL]: refuse }).deps, ignore);
-  expect(await station.cache.rows('buckets').count()).toBe(1);
-});

@@ -2,6 +2,7 @@ import { problem } from '#contract/problem.ts';
 import { type PullResponse, pullResponse } from '#contract/pull.ts';
 import { type TableName, rows, tableNames } from '#contract/rows.ts';
 import type { Cache } from './cache.ts';
+import { clearCache } from './clear-cache.ts';
 import { measureClock } from './clock.ts';
 import { reportStation } from './report-station.ts';
 import type { Station } from './station.ts';
@@ -71,7 +72,6 @@ async function fetchPage(
   const response = await deps.fetch(`/api/sync/pull?${query}`).catch(() => undefined);
   if (response === undefined) return { kind: 'offline' };
   if (response.status === 409 && (await codeOf(response)) === 'must-refetch') return { refetch: true };
-  if (response.status === 403 && (await codeOf(response)) === 'station-revoked') await clearCache(station.cache);
   const refusal = await refusalOf(response, deps.now());
   if (refusal !== null) return refusal;
   const text = await response.text().catch(() => '');
@@ -139,15 +139,6 @@ async function startOver({ cache, outbox }: Station): Promise<void> {
     .anyOf('sent', 'rejected')
     .modify({ status: 'waiting', changeSeq: null, problem: null });
   await clearCache(cache);
-}
-
-/** The rows only: what was recorded here is never thrown away. */
-async function clearCache(cache: Cache): Promise<void> {
-  const tables = tableNames.map((name) => cache.rows(name));
-  await cache.transaction('rw', [...tables, cache.meta], async () => {
-    for (const table of tables) await table.clear();
-    await cache.meta.clear();
-  });
 }
 
 async function codeOf(response: Response): Promise<string | undefined> {

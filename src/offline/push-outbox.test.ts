@@ -148,7 +148,11 @@ test('401 and 403 say so and keep the queue', async () => {
   const revoked = makeProblem(403, 'station-revoked', 'Station revoked', 'This device was revoked. Ask a manager.');
   const answer = (status: number, body: unknown) => answering({ [PUSH]: () => Response.json(body, { status }) }).deps;
   expect(await pushOutbox(station, answer(401, {}))).toEqual({ kind: 'signed-out' });
-  expect(await pushOutbox(station, answer(403, revoked))).toEqual({ kind: 'refused', problem: revoked.detail });
+  expect(await pushOutbox(station, answer(403, revoked))).toEqual({
+    kind: 'refused',
+    problem: revoked.detail,
+    revoked: true,
+  });
   expect(await statuses(station)).toEqual(['waiting']);
 });
 

@@ -1,20 +1,26 @@
 import { signInResponse } from '#contract/sign-in.ts';
+import { clearCache } from './clear-cache.ts';
 import { forgetSent } from './forget-sent.ts';
 import { type LoadProgress, pullChanges } from './pull-changes.ts';
 import { pushOutbox } from './push-outbox.ts';
 import { type Browser, type Station, saveSignIn } from './station.ts';
 import type { SyncDeps, SyncResult } from './sync-result.ts';
 
-/** One run: send what waits, then fetch what changed; a 401 is answered by one renewal, and the queue is kept. */
+/**
+ * One run: send what waits, then fetch what changed; a 401 is answered by one renewal, and the queue is kept. A station
+ * that was revoked forgets the shop's rows, whichever of its requests is told so.
+ */
 export async function syncOnce(
   station: Station,
   deps: SyncDeps,
   onProgress: (progress: LoadProgress) => void,
   browser?: Browser,
 ): Promise<SyncResult> {
-  const result = await exchange(station, deps, onProgress);
-  if (result.kind !== 'signed-out' || !(await renew(station, deps, browser))) return result;
-  return exchange(station, deps, onProgress);
+  const first = await exchange(station, deps, onProgress);
+  const again = first.kind === 'signed-out' && (await renew(station, deps, browser));
+  const result = again ? await exchange(station, deps, onProgress) : first;
+  if (result.kind === 'refused' && result.revoked) await clearCache(station.cache);
+  return result;
 }
 
 async function exchange(

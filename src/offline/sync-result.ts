@@ -1,4 +1,4 @@
-import { problem } from '#contract/problem.ts';
+import { type Problem, problem } from '#contract/problem.ts';
 
 /** How one exchange with the server ended. */
 export type SyncResult =
@@ -7,7 +7,7 @@ export type SyncResult =
   /** 401: nobody is signed in on the server's side. */
   | { kind: 'signed-out' }
   /** 403: this device may not send or fetch; the queue is kept. */
-  | { kind: 'refused'; problem: string }
+  | { kind: 'refused'; problem: string; revoked?: true }
   /** The server named operations that it takes later; fetching goes on. */
   | { kind: 'held'; problem: string }
   | { kind: 'failed'; problem: string; retryAfterMs: number | null };
@@ -28,24 +28,28 @@ export async function refusalOf(response: Response, now: Date): Promise<SyncResu
   const isPage = /^(text\/html|application\/xhtml)/.test(type);
   if (isPage && response.status < 500) return { kind: 'failed', problem: PORTAL, retryAfterMs: null };
   if (response.status === 401) return { kind: 'signed-out' };
-  if (response.status === 403)
-    return {
-      kind: 'refused',
-      problem: (await detailOf(response)) ?? 'This device may not send any more. Ask a manager.',
-    };
+  if (response.status === 403) return refused(await problemOf(response));
   return { kind: 'failed', problem: await whyFailed(response), retryAfterMs: retryAfter(response, now) };
 }
 
 async function whyFailed(response: Response): Promise<string> {
   if (response.ok) return PORTAL;
   if (response.status === 429 || response.status >= 500) return 'The server is busy. It tries again.';
-  return (await detailOf(response)) ?? `The server answered ${response.status}. It tries again.`;
+  return (await problemOf(response))?.detail ?? `The server answered ${response.status}. It tries again.`;
 }
 
-/** The server's own sentence; a page of somebody else has none. */
-async function detailOf(response: Response): Promise<string | undefined> {
+function refused(why: Problem | undefined): SyncResult {
+  const told = {
+    kind: 'refused' as const,
+    problem: why?.detail ?? 'This device may not send any more. Ask a manager.',
+  };
+  return why?.code === 'station-revoked' ? { ...told, revoked: true } : told;
+}
+
+/** The server's own words; a page of somebody else has none. */
+async function problemOf(response: Response): Promise<Problem | undefined> {
   const parsed = problem.safeParse(await response.json().catch(() => undefined));
-  return parsed.success ? parsed.data.detail : undefined;
+  return parsed.success ? parsed.data : undefined;
 }
 
 /** Seconds or a date, RFC 9110 section 10.2.3. */
