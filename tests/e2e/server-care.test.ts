@@ -88,6 +88,37 @@ describe('a server in service', () => {
   });
 });
 
+test('a revoked station is told so by pull and gets no rows; after thirty days its push is told so too', async () => {
+  const manager = demoSignIns.find(({ email }) => email.startsWith('manager')) as { email: string; password: string };
+  const response = await post('/api/auth/sign-in', { ...manager, installIds: [], newInstallId: uuid() });
+  const station = response.headers.getSetCookie().find((cookie) => cookie.includes('station')) ?? '';
+  const cookie = station.split(';')[0] ?? '';
+  const signedIn = (await response.json()) as { shop: { id: string }; station: { id: string } };
+  const pull = () => fetch(`${baseUrl}/api/sync/pull?cursor=`, { headers: { Cookie: cookie } });
+  const push = () => post('/api/sync/push', { protocol: 1, requestId: uuid(), ops: [{ opId: uuid() }] }, cookie);
+  expect(((await (await pull()).json()) as { changes: unknown[] }).changes.length).toBeGreaterThan(100);
+  await revoke(signedIn, '1 minute');
+  const refused = await pull();
+  expect(refused.status).toBe(403);
+  expect(await refused.json()).toMatchObject({ code: 'station-revoked' });
+  expect((await push()).status).toBe(200);
+  await revoke(signedIn, '31 days');
+  const late = await push();
+  expect(late.status).toBe(403);
+  expect(await late.json()).toMatchObject({ code: 'station-revoked' });
+});
+
+async function revoke(of: { shop: { id: string }; station: { id: string } }, ago: string): Promise<void> {
+  const client = new pg.Client({ connectionString: inject('appUrl') });
+  await client.connect();
+  await client.query('begin');
+  await client.query(`select set_config('app.shop_id', $1, true)`, [of.shop.id]);
+  const change = 'update stations set revoked_at = now() - $3::interval where shop_id = $1 and id = $2';
+  expect((await client.query(change, [of.shop.id, of.station.id, ago])).rowCount).toBe(1);
+  await client.query('commit');
+  await client.end();
+}
+
 test('told to stop in the middle of a push, it answers it and only then ends', async () => {
   const office = demoSignIns.find(({ email }) => email.startsWith('owner')) as { email: string; password: string };
   const response = await post('/api/auth/sign-in', { ...office, installIds: [], newInstallId: uuid() });
